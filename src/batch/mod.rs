@@ -1,0 +1,1 @@
+//! Many recordings: one outcome per input, in input order.

@@ -1,0 +1,1 @@
+//! The command line: the only room with arguments, the terminal, the clock and the environment.

@@ -1,0 +1,1 @@
+//! Finished pages in, PDF bytes out: the only place that knows points. It decides nothing.
