@@ -23,6 +23,7 @@ pub mod findings;
 
 pub mod case;
 
+pub mod report;
 pub mod sheet;
 
 pub mod pdf;

@@ -17,6 +17,7 @@ const ROOMS: &[(&str, &[&str])] = &[
     ("measure", &["units", "recording", "condition", "beats", "average"]),
     ("findings", &["units", "recording", "condition", "beats", "average", "measure"]),
     ("case", &["units", "recording", "condition", "beats", "average", "measure", "findings"]),
+    ("report", &["units", "recording", "beats", "measure", "findings", "case"]),
     (
         "sheet",
         &["units", "recording", "lettering", "condition", "beats", "average", "measure", "findings", "case"],

@@ -1,6 +1,7 @@
 //! Beats and rhythm.
 
 use crate::units::{SampleIndex, SampleRate, Seconds};
+use std::fmt;
 
 /// One class of beats of like shape; numbered from 0 in order of size.
 #[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord, Hash)]
@@ -71,4 +72,13 @@ impl Beats {
 
     /// The class of the rhythm that the sheet is about: the largest.
     pub const DOMINANT: ClassId = ClassId(0);
+}
+
+impl fmt::Display for WhyUncertain {
+    fn fmt(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
+        match self {
+            WhyUncertain::TooFewBeats(found) => write!(f, "{found} beats are too few to tell"),
+            WhyUncertain::Gaps => write!(f, "gaps hide beats"),
+        }
+    }
 }

@@ -40,4 +40,15 @@ pub struct Case {
     pub display: Conditioned,
     /// What was computed.
     pub analysis: Analysis,
+    /// The same patient's sinus recording, where one was given to compare with.
+    pub sinus: Option<Box<Sinus>>,
+}
+
+/// A sinus recording that the case is compared with.
+#[derive(Clone, Debug)]
+pub struct Sinus {
+    /// The recording.
+    pub recording: Recording,
+    /// What was computed from it.
+    pub analysis: Analysis,
 }

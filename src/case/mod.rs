@@ -3,5 +3,11 @@
 //! Left of a [`Case`] nothing knows paper; right of it nothing computes medicine.
 
 mod analysis;
+mod table;
 
-pub use analysis::{Analysis, Case, Settings};
+pub use analysis::{Analysis, Case, Settings, Sinus};
+pub use table::{Entry, Row, rp_interval, table};
+
+/// Stands on every sheet and in every output.
+pub const CAUTION: &str = "Measured and marked automatically, not confirmed: for a qualified reader. \
+     Not a diagnosis. Local protocols and licensed practice come first.";
