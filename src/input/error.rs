@@ -1,7 +1,7 @@
 //! Why a file could not be read.
 
 use std::fmt;
-use std::path::PathBuf;
+use std::path::{Path, PathBuf};
 
 /// One file that could not be read.
 #[derive(Debug)]
@@ -24,7 +24,7 @@ pub enum Fault {
         /// What stands there.
         found: String,
         /// What to do next.
-        advice: &'static str,
+        advice: String,
     },
     /// A sound file that this program can't use.
     Unsupported {
@@ -62,6 +62,28 @@ pub enum At {
     },
     /// A 0-based byte.
     Byte(u64),
+}
+
+impl Fault {
+    /// The bytes break the format's rules at a place.
+    pub(crate) fn malformed(
+        at: At,
+        expected: impl Into<String>,
+        found: impl Into<String>,
+        advice: impl Into<String>,
+    ) -> Self {
+        Self::Malformed { at, expected: expected.into(), found: found.into(), advice: advice.into() }
+    }
+
+    /// A sound file that this program can't use.
+    pub(crate) fn unsupported(what: impl Into<String>, advice: impl Into<String>) -> Self {
+        Self::Unsupported { what: what.into(), advice: advice.into() }
+    }
+
+    /// The fault, in a file.
+    pub(crate) fn within(self, file: &Path) -> Error {
+        Error { file: file.to_path_buf(), fault: self }
+    }
 }
 
 impl fmt::Display for At {

@@ -4,9 +4,12 @@
 //! [`Recording`] answers for each of the twelve leads: recorded, derived, or absent and why.
 //! Nothing here knows a file format, a filter or paper.
 
+mod build;
 mod context;
 mod decoded;
 mod lead;
+mod limb;
+mod names;
 mod samples;
 mod twelve;
 

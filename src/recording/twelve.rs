@@ -121,3 +121,36 @@ impl fmt::Display for Absence {
         }
     }
 }
+
+impl fmt::Display for Refusal {
+    fn fmt(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
+        match self {
+            Refusal::NoVoltage { found } if found.is_empty() => {
+                write!(f, "the recording holds no signal; check that it was copied whole")
+            }
+            Refusal::NoVoltage { found } => write!(
+                f,
+                "no signal is a potential (found {}); state the unit of the ECG signals in the source",
+                found.join(", ")
+            ),
+            Refusal::NoKnownLead { found } => write!(
+                f,
+                "no signal has the name of a lead (found {}); name the signals I, II, III, aVR, aVL, aVF, V1 … V6 in the source",
+                found.join(", ")
+            ),
+            Refusal::AllFlat => {
+                write!(f, "every lead is flat or a gap; check the electrodes' record at its source")
+            }
+            Refusal::RateOutOfRange(rate) => write!(
+                f,
+                "sampled at {}/s; 100 to 8000 samples per second are needed: use a recording made at such a rate",
+                rate.get()
+            ),
+            Refusal::LeadTwice { lead } => {
+                write!(f, "two signals are named {lead}; rename one of them in the source")
+            }
+        }
+    }
+}
+
+impl std::error::Error for Refusal {}

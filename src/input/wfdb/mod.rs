@@ -1,0 +1,73 @@
+//! WFDB: a text header (`.hea`) that names binary signal files beside it.
+//!
+//! After the open specification, WFDB Applications Guide, header(5) and signal(5).
+
+mod comments;
+mod header;
+mod locate;
+mod record_line;
+mod signal_line;
+mod signals;
+mod storage;
+
+use super::files::{Candidate, Files, file_name, text_of};
+use super::table::{Format, FormatInfo};
+use super::{Error, Fault};
+use crate::recording::{Decoded, Note, Source, StartTime};
+use header::Header;
+use record_line::RecordLine;
+
+pub(super) const FORMAT: Format = Format {
+    info: FormatInfo {
+        name: "wfdb",
+        description: "WFDB record: a .hea header with signal files of format 16, 24, 32, 61, 80, 160 or 212",
+    },
+    score: locate::score,
+    read,
+};
+
+fn read(candidate: &Candidate) -> Result<Decoded, Error> {
+    let path = locate::header_of(candidate);
+    let mut files = Files::default();
+    let text = text_of(&files.text(&path)?);
+    let header = Header::parse(&text).map_err(|fault| fault.within(&path))?;
+    if header.record.segments.is_some() {
+        let fault = Fault::unsupported(
+            "the record is made of several segments, which are not read yet",
+            "name the header of one of its segments instead",
+        );
+        return Err(fault.within(&path));
+    }
+    let mut notes = header_notes(&header, &file_name(&path.with_extension("")));
+    let signals = signals::read(&path, &header, &mut files, &mut notes)?;
+    let (subject, mut occasion) = comments::interpret(&header.comments);
+    match (header.record.date, header.record.time) {
+        (Some(date), time) => {
+            occasion.start = Some(StartTime { local: date.and_time(time.unwrap_or_default()), zone: None });
+            if time.is_none() {
+                notes.push(Note::information(
+                    "the header states the day but not the time; 00:00 stands for it",
+                ));
+            }
+        }
+        (None, Some(time)) => occasion.remarks.push(format!("Time of day at the start: {time}")),
+        (None, None) => {}
+    }
+    let source = Source { file: file_name(&path), format: FORMAT.info.name, sha256: files.sha256() };
+    Ok(Decoded { source, signals, subject, occasion, notes })
+}
+
+fn header_notes(header: &Header, stem: &str) -> Vec<Note> {
+    let mut notes = Vec::new();
+    let RecordLine { name, rate_stated, unreadable_start, .. } = &header.record;
+    if name != stem {
+        notes.push(Note::information(format!("the header names the record {name}")));
+    }
+    if !rate_stated {
+        notes.push(Note::caution("the header states no sampling rate; WFDB's default of 250/s was taken"));
+    }
+    if let Some(text) = unreadable_start {
+        notes.push(Note::information(format!("the start time `{text}` can't be read and is left out")));
+    }
+    notes
+}

@@ -1,0 +1,3 @@
+//! Reading recordings, against values decoded by others.
+
+mod leads;
