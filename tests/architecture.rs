@@ -23,7 +23,7 @@ const ROOMS: &[(&str, &[&str])] = &[
         &["units", "recording", "lettering", "condition", "beats", "average", "measure", "findings", "case"],
     ),
     ("pdf", &["units", "lettering", "sheet"]),
-    ("batch", &["units", "recording", "input", "case", "sheet", "pdf"]),
+    ("batch", &["units"]),
     (
         "cli",
         &[

@@ -1,5 +1,6 @@
 //! All integration tests, one binary. A test's name is the sentence that it holds.
 
 mod architecture;
+mod batch;
 mod input;
 mod support;
