@@ -1,3 +1,4 @@
 //! Reading recordings, against values decoded by others.
 
 mod leads;
+mod wfdb;

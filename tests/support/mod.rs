@@ -1,5 +1,7 @@
 //! What the tests share: temporary folders, the annotated recordings, the program itself.
 
+pub mod npz;
+
 use std::path::{Path, PathBuf};
 use std::sync::atomic::{AtomicUsize, Ordering};
 

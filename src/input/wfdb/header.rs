@@ -1,8 +1,8 @@
 //! The header as written.
 
-use super::super::{At, Fault};
 use super::record_line::RecordLine;
 use super::signal_line::SignalLine;
+use crate::input::{At, Fault};
 
 /// Signals read at most; recordings from a body hold a few dozen.
 const MAX_SIGNALS: u64 = 256;

@@ -1,8 +1,8 @@
 //! Which header belongs to the path that was named.
 
-use super::super::files::{Candidate, text_of};
-use super::super::table::Score;
 use super::record_line::RecordLine;
+use crate::input::files::{Candidate, text_of};
+use crate::input::table::Score;
 use std::fs::File;
 use std::io::Read;
 use std::path::{Path, PathBuf};

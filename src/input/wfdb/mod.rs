@@ -2,7 +2,9 @@
 //!
 //! After the open specification, WFDB Applications Guide, header(5) and signal(5).
 
+mod checks;
 mod comments;
+mod groups;
 mod header;
 mod locate;
 mod record_line;
@@ -10,9 +12,9 @@ mod signal_line;
 mod signals;
 mod storage;
 
-use super::files::{Candidate, Files, file_name, text_of};
-use super::table::{Format, FormatInfo};
-use super::{Error, Fault};
+use crate::input::files::{Candidate, Files, file_name, text_of};
+use crate::input::table::{Format, FormatInfo};
+use crate::input::{Error, Fault};
 use crate::recording::{Decoded, Note, Source, StartTime};
 use header::Header;
 use record_line::RecordLine;
@@ -20,7 +22,7 @@ use record_line::RecordLine;
 pub(super) const FORMAT: Format = Format {
     info: FormatInfo {
         name: "wfdb",
-        description: "WFDB record: a .hea header with signal files of format 16, 24, 32, 61, 80, 160 or 212",
+        description: "WFDB record: a text header (.hea) with signal files beside it (not FLAC, not multi-segment)",
     },
     score: locate::score,
     read,

@@ -1,6 +1,6 @@
 //! The record line: `name[/segments] signals [rate[/counter[(base)]] [samples [time [date]]]]`.
 
-use super::super::{At, Fault};
+use crate::input::{At, Fault};
 use crate::units::SampleRate;
 use chrono::{NaiveDate, NaiveTime};
 

@@ -1,7 +1,7 @@
 //! A signal line: `file format[xSPF][:skew][+offset] [gain[(baseline)][/units] [resolution [zero [initial
 //! [checksum [block [description]]]]]]]`.
 
-use super::super::{At, Fault};
+use crate::input::{At, Fault};
 
 /// What a signal line states; `None` is "not stated".
 #[derive(Debug)]

@@ -1,12 +1,14 @@
 //! How samples stand in a signal file, after signal(5).
 
-use super::super::{At, Fault};
+use crate::input::{At, Fault};
 
 /// A storage format.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
 pub(super) enum Storage {
     /// 0: no file, no samples.
     Null,
+    /// 8: first differences of 8 bit, from the initial value in the header.
+    Differences8,
     /// 16: two's complement, 16 bit, low byte first.
     Bits16,
     /// 24: two's complement, 24 bit, low byte first.
@@ -21,12 +23,21 @@ pub(super) enum Storage {
     Offset16,
     /// 212: two samples of 12 bit in three bytes.
     Packed12,
+    /// 310: three samples of 10 bit in two words of 16 bit, the third in the words' high bits.
+    Packed10InWords,
+    /// 311: three samples of 10 bit, from the low end of 32 bit.
+    Packed10,
 }
 
+/// The formats that are read, as messages list them.
+pub(super) const READ: &str = "8, 16, 24, 32, 61, 80, 160, 212, 310 or 311";
+
 impl Storage {
+    /// By the number in the header.
     pub fn of(format: u32, at: At) -> Result<Self, Fault> {
         Ok(match format {
             0 => Self::Null,
+            8 => Self::Differences8,
             16 => Self::Bits16,
             24 => Self::Bits24,
             32 => Self::Bits32,
@@ -34,16 +45,18 @@ impl Storage {
             80 => Self::Offset8,
             160 => Self::Offset16,
             212 => Self::Packed12,
-            8 | 310 | 311 | 508 | 516 | 524 => {
+            310 => Self::Packed10InWords,
+            311 => Self::Packed10,
+            508 | 516 | 524 => {
                 return Err(Fault::unsupported(
-                    format!("{at}: storage format {format} is not read yet"),
-                    "store the record in format 16, 24, 32, 61, 80, 160 or 212",
+                    format!("{at}: the FLAC-compressed storage format {format} is not read yet"),
+                    format!("store the record in format {READ}"),
                 ));
             }
             _ => {
                 return Err(Fault::malformed(
                     at,
-                    "storage format 16, 24, 32, 61, 80, 160 or 212",
+                    format!("storage format {READ}"),
                     format!("`{format}`"),
                     "correct the signal line, as signal(5) of WFDB describes it",
                 ));
@@ -51,69 +64,128 @@ impl Storage {
         })
     }
 
-    /// Bits of one sample.
+    /// Bits of one sample's value.
     pub fn bits(self) -> u32 {
         match self {
             Self::Null => 0,
             Self::Offset8 => 8,
+            Self::Packed10 | Self::Packed10InWords => 10,
             Self::Packed12 => 12,
-            Self::Bits16 | Self::Bits16HighFirst | Self::Offset16 => 16,
+            // Differences add up to a value of the usual size.
+            Self::Bits16 | Self::Bits16HighFirst | Self::Offset16 | Self::Differences8 => 16,
             Self::Bits24 => 24,
             Self::Bits32 => 32,
         }
     }
 
-    /// The code for "no sample": the smallest that the format holds.
-    pub fn invalid(self) -> i32 {
-        (-1i64 << self.bits().max(1).saturating_sub(1)) as i32
+    /// The code for "no sample": the smallest value that the format holds.
+    pub fn invalid(self) -> Option<i32> {
+        match self {
+            Self::Null | Self::Differences8 => None,
+            _ => Some((-1i64 << (self.bits() - 1)) as i32),
+        }
     }
 
-    /// Bytes of so many samples; a last incomplete group counts as far as it is needed.
+    /// Samples and bytes of one group: the smallest count that fills whole bytes.
+    fn group(self) -> (u64, u64) {
+        match self {
+            Self::Null => (1, 0),
+            Self::Differences8 | Self::Offset8 => (1, 1),
+            Self::Bits16 | Self::Bits16HighFirst | Self::Offset16 => (1, 2),
+            Self::Bits24 => (1, 3),
+            Self::Bits32 => (1, 4),
+            Self::Packed12 => (2, 3),
+            Self::Packed10 | Self::Packed10InWords => (3, 4),
+        }
+    }
+
+    /// Bytes that the first `samples` of a group need; fewer than a group may stand at the end of a file.
+    fn started_group(self, samples: u64) -> u64 {
+        match self {
+            Self::Packed10InWords => 2 * samples,
+            _ => (samples * u64::from(self.bits())).div_ceil(8),
+        }
+    }
+
+    /// Bytes of so many samples.
     pub fn bytes_of(self, samples: u64) -> u64 {
-        (samples.saturating_mul(u64::from(self.bits()))).div_ceil(8)
+        let (count, bytes) = self.group();
+        (samples / count).saturating_mul(bytes).saturating_add(match samples % count {
+            0 => 0,
+            rest => self.started_group(rest),
+        })
     }
 
     /// Whole samples in so many bytes.
     pub fn samples_in(self, bytes: u64) -> u64 {
-        match self.bits() {
-            0 => 0,
-            bits => bytes.saturating_mul(8) / u64::from(bits),
+        let (count, group) = self.group();
+        if group == 0 {
+            return 0;
         }
+        let rest = bytes % group;
+        let started = (1..count).take_while(|&samples| self.started_group(samples) <= rest).count() as u64;
+        (bytes / group).saturating_mul(count).saturating_add(started)
     }
 
-    /// Up to `count` samples, as many as the bytes hold.
+    /// Up to `count` samples, as many as the bytes hold. Differences are not yet summed.
     pub fn decode(self, bytes: &[u8], count: usize) -> Vec<i32> {
-        let mut samples: Vec<i32> = Vec::with_capacity(count);
+        let mut samples: Vec<i32> =
+            Vec::with_capacity(count.min(self.samples_in(bytes.len() as u64) as usize));
         match self {
             Self::Null => {}
-            Self::Bits16 => samples.extend(words(bytes, count, |[a, b]| i16::from_le_bytes([a, b]).into())),
+            Self::Differences8 => samples.extend(words(bytes, count, |[a]| i32::from(a as i8))),
+            Self::Offset8 => samples.extend(words(bytes, count, |[a]| i32::from(a) - 128)),
+            Self::Bits16 => samples.extend(words(bytes, count, |pair| i16::from_le_bytes(pair).into())),
             Self::Bits16HighFirst => {
-                samples.extend(words(bytes, count, |[a, b]| i16::from_be_bytes([a, b]).into()));
+                samples.extend(words(bytes, count, |pair| i16::from_be_bytes(pair).into()));
             }
             Self::Offset16 => {
-                samples.extend(words(bytes, count, |[a, b]| i32::from(u16::from_le_bytes([a, b])) - 32768));
+                samples.extend(words(bytes, count, |pair| i32::from(u16::from_le_bytes(pair)) - 32768));
             }
             Self::Bits24 => {
                 samples.extend(words(bytes, count, |[a, b, c]| i32::from_le_bytes([0, a, b, c]) >> 8));
             }
             Self::Bits32 => samples.extend(words(bytes, count, i32::from_le_bytes)),
-            Self::Offset8 => samples.extend(words(bytes, count, |[a]| i32::from(a) - 128)),
             Self::Packed12 => {
                 for group in bytes.chunks(3).take(count.div_ceil(2)) {
                     if let [low, high, ..] = *group {
-                        samples.push(signed12(low, high & 0x0f));
+                        samples.push(signed(u32::from(low) | u32::from(high & 0x0f) << 8, 12));
                     }
                     if let [_, high, low] = *group {
-                        samples.push(signed12(low, high >> 4));
+                        samples.push(signed(u32::from(low) | u32::from(high >> 4) << 8, 12));
                     }
                 }
-                samples.truncate(count);
+            }
+            Self::Packed10InWords => {
+                for group in bytes.chunks(4).take(count.div_ceil(3)) {
+                    let word = |first: usize| match group.get(first..first + 2) {
+                        Some(&[low, high]) => Some(u32::from(low) | u32::from(high) << 8),
+                        _ => None,
+                    };
+                    let (one, two) = (word(0), word(2));
+                    samples.extend([one, two].into_iter().flatten().map(|word| signed(word >> 1, 10)));
+                    if let (Some(one), Some(two)) = (one, two) {
+                        samples.push(signed(one >> 11 | two >> 11 << 5, 10));
+                    }
+                }
+            }
+            Self::Packed10 => {
+                for group in bytes.chunks(4).take(count.div_ceil(3)) {
+                    let mut word = [0; 4];
+                    word[..group.len()].copy_from_slice(group);
+                    let word = u32::from_le_bytes(word);
+                    let whole = [2, 3, 4].into_iter().filter(|&needed| needed <= group.len()).count();
+                    samples
+                        .extend([0, 10, 20].into_iter().take(whole).map(|shift| signed(word >> shift, 10)));
+                }
             }
         }
+        samples.truncate(count);
         samples
     }
 }
 
+/// Up to `count` words of `N` bytes each.
 fn words<const N: usize>(
     bytes: &[u8],
     count: usize,
@@ -122,6 +194,36 @@ fn words<const N: usize>(
     bytes.as_chunks::<N>().0.iter().take(count).map(move |&word| value(word))
 }
 
-fn signed12(low: u8, high: u8) -> i32 {
-    i32::from((i16::from(high) << 8 | i16::from(low)) << 4 >> 4)
+/// The low `bits` as two's complement.
+fn signed(word: u32, bits: u32) -> i32 {
+    let unused = 32 - bits;
+    ((word << unused) as i32) >> unused
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    // Source: signal(5), the layouts of formats 212, 310 and 311 in words (m); the samples are chosen by hand.
+    #[test]
+    fn packed_samples_unpack_with_their_signs() {
+        assert_eq!(Storage::Packed12.decode(&[0x01, 0xf8, 0xff], 2), [-2047, -1]);
+        assert_eq!(Storage::Packed10.decode(&[0xff, 0x03, 0x00, 0x20], 3), [-1, 0, -512]);
+        assert_eq!(Storage::Packed10InWords.decode(&[0xfe, 0x07, 0x02, 0x80], 3), [-1, 1, -512]);
+    }
+
+    #[test]
+    fn a_started_group_at_the_end_counts_as_far_as_it_goes() {
+        for storage in [Storage::Packed12, Storage::Packed10, Storage::Packed10InWords, Storage::Bits24] {
+            for samples in 0..20 {
+                let bytes = storage.bytes_of(samples);
+                assert!(storage.samples_in(bytes) >= samples, "{storage:?} {samples}");
+                assert!(bytes == 0 || storage.samples_in(bytes - 1) < samples, "{storage:?} {samples}");
+                let decoded = storage.decode(&vec![0; bytes as usize], samples as usize);
+                assert_eq!(decoded.len() as u64, samples, "{storage:?}");
+            }
+        }
+        assert_eq!(Storage::Packed10.bytes_of(1019), 1359);
+        assert_eq!(Storage::Packed10InWords.bytes_of(1018), 1358);
+    }
 }
