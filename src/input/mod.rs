@@ -6,6 +6,7 @@
 mod clipping;
 mod error;
 mod files;
+mod stated;
 mod table;
 mod voltage;
 mod wfdb;

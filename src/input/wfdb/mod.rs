@@ -16,6 +16,7 @@ use crate::input::files::{Candidate, Files, file_name, text_of};
 use crate::input::table::{Format, FormatInfo};
 use crate::input::{Error, Fault};
 use crate::recording::{Decoded, Note, Source, StartTime};
+use comments::Stated;
 use header::Header;
 use record_line::RecordLine;
 
@@ -40,19 +41,20 @@ fn read(candidate: &Candidate) -> Result<Decoded, Error> {
         );
         return Err(fault.within(&path));
     }
+    let stated = Stated::of(&header.comments);
     let mut notes = header_notes(&header, &file_name(&path.with_extension("")));
-    let signals = signals::read(&path, &header, &mut files, &mut notes)?;
-    let (subject, mut occasion) = comments::interpret(&header.comments);
+    let mut signals = signals::read(&path, &header, &mut files, &mut notes)?;
+    signals::apply(&stated, &mut signals);
+    let Stated { subject, mut occasion, zone, notes: stated_notes, .. } = stated;
+    notes.extend(stated_notes);
     match (header.record.date, header.record.time) {
-        (Some(date), time) => {
-            occasion.start = Some(StartTime { local: date.and_time(time.unwrap_or_default()), zone: None });
-            if time.is_none() {
-                notes.push(Note::information(
-                    "the header states the day but not the time; 00:00 stands for it",
-                ));
-            }
+        (Some(date), Some(time)) => occasion.start = Some(StartTime { local: date.and_time(time), zone }),
+        (Some(date), None) => {
+            occasion.remarks.insert(0, format!("Day of the recording {date}, time not stated"))
         }
-        (None, Some(time)) => occasion.remarks.push(format!("Time of day at the start: {time}")),
+        (None, Some(time)) => {
+            occasion.remarks.insert(0, format!("Time of the recording {time}, day not stated"))
+        }
         (None, None) => {}
     }
     let source = Source { file: file_name(&path), format: FORMAT.info.name, sha256: files.sha256() };

@@ -1,5 +1,6 @@
 //! The record line: `name[/segments] signals [rate[/counter[(base)]] [samples [time [date]]]]`.
 
+use crate::input::stated::date_of;
 use crate::input::{At, Fault};
 use crate::units::SampleRate;
 use chrono::{NaiveDate, NaiveTime};
@@ -79,7 +80,7 @@ fn rate_of(text: Option<&str>, at: At) -> Result<SampleRate, Fault> {
     })
 }
 
-/// `[[HH:]MM:]SS[.fraction]`.
+/// `[[HH:]MM:]SS[.fraction]`; a bare number of seconds is not taken for a time.
 fn time_of(text: &str) -> Option<NaiveTime> {
     let parts: Vec<&str> = text.split(':').collect();
     let (hours, minutes, seconds) = match parts[..] {
@@ -87,26 +88,12 @@ fn time_of(text: &str) -> Option<NaiveTime> {
         [m, s] => (0, m.parse().ok()?, s),
         _ => return None,
     };
-    let seconds: f64 = seconds.parse().ok()?;
-    if !(0.0..60.0).contains(&seconds) {
+    let (seconds, fraction) = seconds.split_once('.').unwrap_or((seconds, ""));
+    if fraction.len() > 9 || !fraction.bytes().all(|digit| digit.is_ascii_digit()) {
         return None;
     }
-    let whole = NaiveTime::from_hms_opt(hours, minutes, seconds as u32)?;
-    let micros = (seconds.fract() * 1e6).round().min(999_999.0);
-    Some(whole + chrono::Duration::microseconds(micros as i64))
-}
-
-/// `DD/MM/YYYY`, or `DD-Mon-YYYY` as real headers also have it.
-fn date_of(text: &str) -> Option<NaiveDate> {
-    const MONTHS: [&str; 12] =
-        ["jan", "feb", "mar", "apr", "may", "jun", "jul", "aug", "sep", "oct", "nov", "dec"];
-    let parts: Vec<&str> = text.split(['/', '-']).collect();
-    let [day, month, year] = parts[..] else { return None };
-    let month = match month.parse::<u32>() {
-        Ok(month) => month,
-        Err(_) => MONTHS.iter().zip(1..).find(|(name, _)| month.eq_ignore_ascii_case(name))?.1,
-    };
-    NaiveDate::from_ymd_opt(year.parse().ok()?, month, day.parse().ok()?)
+    let nanoseconds = format!("{fraction:0<9}").parse().ok()?;
+    NaiveTime::from_hms_nano_opt(hours, minutes, seconds.parse().ok()?, nanoseconds)
 }
 
 fn whole(text: &str, expected: &str, at: At) -> Result<u64, Fault> {

@@ -1,6 +1,7 @@
 //! From counts to signals in mV.
 
 use super::checks::Checks;
+use super::comments::Stated;
 use super::groups::{Group, frames};
 use super::header::Header;
 use super::signal_line::SignalLine;
@@ -43,6 +44,29 @@ pub(super) fn read(
     checks.report(notes);
     unit_notes(header, notes);
     Ok(signals)
+}
+
+/// What comments state of signals: scales that are not calibrated, and clipped spans, which then stand for
+/// all that was found.
+pub(super) fn apply(stated: &Stated, signals: &mut [Signal]) {
+    for &index in &stated.uncalibrated {
+        if let Some(signal) = signals.get_mut(index)
+            && signal.quantity == Quantity::Voltage
+        {
+            signal.quantity = Quantity::UncalibratedVoltage;
+        }
+    }
+    if stated.clipped.is_empty() {
+        return;
+    }
+    for (index, signal) in signals.iter_mut().enumerate() {
+        let spans = stated.clipped.iter().filter(|(of, _)| *of == index);
+        let spans = spans.fold(Spans::none(), |all, (_, spans)| all.union(spans));
+        let end = signal.samples.len();
+        let inside = spans.iter().map(|span| Span { start: span.start, end: span.end.min(end) }).collect();
+        let samples = signal.samples.clone();
+        signal.samples = samples.with_saturated(Spans::from_unordered(inside));
+    }
 }
 
 fn rate(line: &SignalLine, header: &Header) -> Result<SampleRate, Fault> {
