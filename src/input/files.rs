@@ -2,6 +2,7 @@
 
 use super::{At, Error, Fault};
 use sha2::{Digest, Sha256};
+use std::borrow::Cow;
 use std::fs::{self, File};
 use std::io::{self, Read};
 use std::path::{Path, PathBuf};
@@ -132,10 +133,10 @@ pub(super) fn file_name(path: &Path) -> String {
 }
 
 /// UTF-8, or else Latin-1, which every byte string is.
-pub(super) fn text_of(bytes: &[u8]) -> String {
+pub(super) fn text_of(bytes: &[u8]) -> Cow<'_, str> {
     let bytes = bytes.strip_prefix(b"\xef\xbb\xbf").unwrap_or(bytes);
     match std::str::from_utf8(bytes) {
-        Ok(text) => text.to_owned(),
+        Ok(text) => text.into(),
         Err(_) => bytes.iter().map(|&byte| char::from(byte)).collect(),
     }
 }

@@ -4,8 +4,10 @@
 //! content. A reader never panics, never allocates past its limits, and never guesses a unit or a rate.
 
 mod clipping;
+mod csv;
 mod error;
 mod files;
+mod limits;
 mod stated;
 mod table;
 mod voltage;

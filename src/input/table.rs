@@ -1,7 +1,7 @@
 //! The table of formats.
 
 use super::files::Candidate;
-use super::{Error, Fault, wfdb};
+use super::{Error, Fault, csv, wfdb};
 use crate::recording::Decoded;
 
 /// How sure a format is that a file is its own, 0 (not mine) to 100 (nothing else looks like this).
@@ -26,7 +26,7 @@ pub struct FormatInfo {
     pub description: &'static str,
 }
 
-const FORMATS: &[Format] = &[wfdb::FORMAT];
+const FORMATS: &[Format] = &[wfdb::FORMAT, csv::FORMAT];
 
 /// Every format that is read, in the order in which a file is offered to them.
 pub fn formats() -> impl Iterator<Item = FormatInfo> {

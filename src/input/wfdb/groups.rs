@@ -4,12 +4,10 @@ use super::header::Header;
 use super::signal_line::SignalLine;
 use super::storage::Storage;
 use crate::input::files::{Files, beside};
+use crate::input::limits::{MAX_SAMPLES, at_most};
 use crate::input::{At, Error, Fault};
 use std::ops::Range;
 use std::path::Path;
-
-/// Samples of all signals together, read at most: 1 GiB as mV.
-const MAX_SAMPLES: u64 = 1 << 27;
 
 /// Neighbouring signal lines that name one file, with the bytes of that file.
 pub(super) struct Group<'a> {
@@ -119,10 +117,7 @@ pub(super) fn frames(header: &Header, groups: &[Group]) -> Result<u64, Fault> {
         ));
     }
     let frame: u64 = groups.iter().map(|group| group.frame).sum();
-    let samples = frames.saturating_mul(frame);
-    if samples > MAX_SAMPLES {
-        return Err(Fault::Limit { what: "samples in the record", found: samples, max: MAX_SAMPLES });
-    }
+    at_most(MAX_SAMPLES, "samples in the record", frames.saturating_mul(frame))?;
     Ok(frames)
 }
 

@@ -2,10 +2,8 @@
 
 use super::record_line::RecordLine;
 use super::signal_line::SignalLine;
+use crate::input::limits::{MAX_SIGNALS, at_most};
 use crate::input::{At, Fault};
-
-/// Signals read at most; recordings from a body hold a few dozen.
-const MAX_SIGNALS: u64 = 256;
 
 /// A header, line by line.
 pub(super) struct Header {
@@ -38,13 +36,7 @@ impl Header {
             ));
         };
         let record = RecordLine::parse(first, number)?;
-        if record.signals > MAX_SIGNALS {
-            return Err(Fault::Limit {
-                what: "signals in the header",
-                found: record.signals,
-                max: MAX_SIGNALS,
-            });
-        }
+        at_most(MAX_SIGNALS, "signals in the header", record.signals)?;
         if record.segments.is_some() {
             return Ok(Self { record, signals: Vec::new(), comments });
         }

@@ -32,8 +32,8 @@ pub(super) const FORMAT: Format = Format {
 fn read(candidate: &Candidate) -> Result<Decoded, Error> {
     let path = locate::header_of(candidate);
     let mut files = Files::default();
-    let text = text_of(&files.text(&path)?);
-    let header = Header::parse(&text).map_err(|fault| fault.within(&path))?;
+    let bytes = files.text(&path)?;
+    let header = Header::parse(&text_of(&bytes)).map_err(|fault| fault.within(&path))?;
     if header.record.segments.is_some() {
         let fault = Fault::unsupported(
             "the record is made of several segments, which are not read yet",
