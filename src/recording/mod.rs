@@ -4,12 +4,14 @@
 //! [`Recording`] answers for each of the twelve leads: recorded, derived, or absent and why.
 //! Nothing here knows a file format, a filter or paper.
 
+mod age;
 mod build;
 mod context;
 mod decoded;
 mod lead;
 mod limb;
 mod names;
+mod plausible;
 mod samples;
 mod twelve;
 
