@@ -1,0 +1,272 @@
+//! The content stream of a page, in micrometres.
+
+use super::fonts::{self, Fonts};
+use super::structure::PageTags;
+use super::{Error, objects};
+use crate::sheet::{Anchor, Element, Grid, Ink, Page, Pen, Point, Rect, Role, Shape, Text};
+use crate::units::Millimetres;
+use lopdf::{Dictionary, Document, Object, ObjectId, dictionary};
+use std::fmt::Write;
+
+/// What a page is drawn with.
+pub(super) struct Content {
+    pub bytes: Vec<u8>,
+    pub xobjects: Dictionary,
+}
+
+/// The grids of a document; equal ones are written once.
+#[derive(Default)]
+pub(super) struct Grids(Vec<(Grid, ObjectId)>);
+
+/// Micrometres, rounded.
+fn um(length: Millimetres) -> i64 {
+    (length.get() * 1000.0).round() as i64
+}
+
+/// Draws a page.
+pub(super) fn page(
+    page: &Page,
+    fonts: &Fonts,
+    grids: &mut Grids,
+    document: &mut Document,
+    tags: &mut PageTags,
+) -> Result<Content, Error> {
+    let mut painter = Painter {
+        out: String::with_capacity(192 * 1024),
+        height: um(page.paper.size().1),
+        fonts,
+        state: State::default(),
+    };
+    let mut xobjects = Dictionary::new();
+    // One unit is a micrometre: 0.001 mm × 72 pt / 25.4 mm.
+    let unit = 0.001 * 72.0 / 25.4;
+    painter.line(format_args!("{unit:.16} 0 0 {unit:.16} 0 0 cm"));
+    painter.line(format_args!("1 J 1 j"));
+    for element in &page.elements {
+        painter.element(element, tags, |grid| {
+            let id = grids.place(document, grid, page)?;
+            let name = format!("Grid{}", id.0);
+            xobjects.set(name.as_str(), id);
+            Ok(name)
+        })?;
+    }
+    Ok(Content { bytes: painter.out.into_bytes(), xobjects })
+}
+
+impl Grids {
+    fn place(&mut self, document: &mut Document, grid: &Grid, page: &Page) -> Result<ObjectId, Error> {
+        if let Some((_, id)) = self.0.iter().find(|(known, _)| known == grid) {
+            return Ok(*id);
+        }
+        let height = um(page.paper.size().1);
+        let (left, top) = (um(grid.field.x), height - um(grid.field.y));
+        let (right, bottom) = (left + um(grid.field.width), top - um(grid.field.height));
+        let mut out = "0 J\n".to_owned();
+        for (coarse, pen) in [(false, &grid.fine), (true, &grid.coarse)] {
+            let _ = writeln!(out, "{} w {} RG", um(pen.width), colour(pen.ink));
+            for x in (left..=right).step_by(1000).filter(|x| ((x - left) % 5000 == 0) == coarse) {
+                let _ = writeln!(out, "{x} {bottom} m {x} {top} l");
+            }
+            for y in (0..=top - bottom).step_by(1000).filter(|y| (y % 5000 == 0) == coarse) {
+                let y = top - y;
+                let _ = writeln!(out, "{left} {y} m {right} {y} l");
+            }
+            out.push_str("S\n");
+        }
+        let edge = um(grid.coarse.width.max(grid.fine.width));
+        let bounds = [left - edge, bottom - edge, right + edge, top + edge].map(Object::from).to_vec();
+        let dictionary = dictionary! { "Type" => "XObject", "Subtype" => "Form", "BBox" => bounds };
+        let id = document.add_object(objects::compressed(dictionary, out.as_bytes())?);
+        self.0.push((grid.clone(), id));
+        Ok(id)
+    }
+}
+
+/// What the graphics state holds, so that it is set only when it changes.
+#[derive(Default)]
+struct State {
+    width: Option<i64>,
+    stroke: Option<Ink>,
+    fill: Option<Ink>,
+    dash: Option<(i64, i64)>,
+}
+
+struct Painter<'a> {
+    out: String,
+    height: i64,
+    fonts: &'a Fonts,
+    state: State,
+}
+
+fn colour(ink: Ink) -> String {
+    let part = |value: u8| {
+        let text = format!("{:.3}", f64::from(value) / 255.0);
+        text.trim_end_matches('0').trim_end_matches('.').to_owned()
+    };
+    format!("{} {} {}", part(ink.r), part(ink.g), part(ink.b))
+}
+
+impl Painter<'_> {
+    fn line(&mut self, text: std::fmt::Arguments<'_>) {
+        // Writing to a String can't fail.
+        let _ = self.out.write_fmt(text);
+        self.out.push('\n');
+    }
+
+    fn element(
+        &mut self,
+        element: &Element,
+        tags: &mut PageTags,
+        mut grid: impl FnMut(&Grid) -> Result<String, Error>,
+    ) -> Result<(), Error> {
+        if element.role != Role::TableRow {
+            self.begin(&element.role, tags);
+        }
+        for shape in &element.shapes {
+            if element.role == Role::TableRow {
+                match shape {
+                    Shape::Text(_) => self.begin(&Role::TableRow, tags),
+                    _ => self.begin(&Role::Artifact, tags),
+                }
+            }
+            self.shape(shape, &mut grid)?;
+            if element.role == Role::TableRow {
+                self.out.push_str("EMC\n");
+            }
+        }
+        if element.role == Role::TableRow {
+            tags.end_row();
+        } else {
+            self.out.push_str("EMC\n");
+        }
+        Ok(())
+    }
+
+    fn begin(&mut self, role: &Role, tags: &mut PageTags) {
+        match tags.next(role) {
+            None => self.out.push_str("/Artifact BMC\n"),
+            Some((tag, id)) => self.line(format_args!("/{tag} <</MCID {id}>> BDC")),
+        }
+    }
+
+    fn shape(
+        &mut self,
+        shape: &Shape,
+        grid: &mut impl FnMut(&Grid) -> Result<String, Error>,
+    ) -> Result<(), Error> {
+        match shape {
+            Shape::Grid(shape) => {
+                let name = grid(shape)?;
+                self.line(format_args!("q /{name} Do Q"));
+            }
+            Shape::Polyline { points, pen } => self.polyline(points, pen),
+            Shape::Rect { rect, fill, pen } => self.rect(rect, *fill, pen.as_ref()),
+            Shape::Text(text) => self.text(text)?,
+        }
+        Ok(())
+    }
+
+    fn stroke_with(&mut self, pen: &Pen) {
+        let width = um(pen.width);
+        if self.state.width != Some(width) {
+            self.state.width = Some(width);
+            self.line(format_args!("{width} w"));
+        }
+        if self.state.stroke != Some(pen.ink) {
+            self.state.stroke = Some(pen.ink);
+            self.line(format_args!("{} RG", colour(pen.ink)));
+        }
+        let dash = pen.dash.map(|(on, off)| (um(on), um(off)));
+        if self.state.dash != dash {
+            self.state.dash = dash;
+            match dash {
+                Some((on, off)) => self.line(format_args!("[{on} {off}] 0 d")),
+                None => self.line(format_args!("[] 0 d")),
+            }
+        }
+    }
+
+    fn fill_with(&mut self, ink: Ink) {
+        if self.state.fill != Some(ink) {
+            self.state.fill = Some(ink);
+            self.line(format_args!("{} rg", colour(ink)));
+        }
+    }
+
+    fn place(&self, point: &Point) -> (i64, i64) {
+        (um(point.x), self.height - um(point.y))
+    }
+
+    fn polyline(&mut self, points: &[Point], pen: &Pen) {
+        self.stroke_with(pen);
+        for (index, point) in points.iter().enumerate() {
+            let (x, y) = self.place(point);
+            push_integer(&mut self.out, x);
+            self.out.push(' ');
+            push_integer(&mut self.out, y);
+            self.out.push_str(if index == 0 { " m\n" } else { " l\n" });
+        }
+        self.out.push_str("S\n");
+    }
+
+    fn rect(&mut self, rect: &Rect, fill: Option<Ink>, pen: Option<&Pen>) {
+        if let Some(ink) = fill {
+            self.fill_with(ink);
+        }
+        if let Some(pen) = pen {
+            self.stroke_with(pen);
+        }
+        let operator = match (fill, pen) {
+            (Some(_), Some(_)) => "B",
+            (Some(_), None) => "f",
+            (None, Some(_)) => "S",
+            (None, None) => return,
+        };
+        let bottom = Point { x: rect.x, y: rect.y + rect.height };
+        let (x, y) = self.place(&bottom);
+        self.line(format_args!("{x} {y} {} {} re {operator}", um(rect.width), um(rect.height)));
+    }
+
+    fn text(&mut self, text: &Text) -> Result<(), Error> {
+        if text.text.is_empty() {
+            return Ok(());
+        }
+        self.fill_with(text.ink);
+        let width = crate::lettering::width(text.face, text.size, &text.text).map_err(Error::Glyph)?;
+        let back = um(match text.anchor {
+            Anchor::Left => Millimetres::ZERO,
+            Anchor::Middle => width * 0.5,
+            Anchor::Right => width,
+        });
+        let (x, y) = self.place(&text.at);
+        let mut glyphs = String::with_capacity(text.text.len() * 4);
+        self.fonts.encode(text.face, &text.text, &mut glyphs)?;
+        let (name, size) = (fonts::name(text.face), um(text.size));
+        let matrix = if text.vertical {
+            format!("0 1 -1 0 {x} {}", y - back)
+        } else {
+            format!("1 0 0 1 {} {y}", x - back)
+        };
+        self.line(format_args!("BT /{name} {size} Tf {matrix} Tm <{glyphs}> Tj ET"));
+        Ok(())
+    }
+}
+
+/// Digits without the machinery of `format!`: a page has some ten thousand vertices.
+fn push_integer(out: &mut String, value: i64) {
+    if value < 0 {
+        out.push('-');
+    }
+    let mut digits = [0u8; 20];
+    let mut start = digits.len();
+    let mut rest = value.unsigned_abs();
+    loop {
+        start -= 1;
+        digits[start] = b'0' + (rest % 10) as u8;
+        rest /= 10;
+        if rest == 0 {
+            break;
+        }
+    }
+    out.extend(digits[start..].iter().map(|&digit| digit as char));
+}
