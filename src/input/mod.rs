@@ -6,6 +6,7 @@
 mod clipping;
 mod csv;
 mod error;
+mod export;
 mod files;
 mod limits;
 mod stated;
@@ -14,6 +15,7 @@ mod voltage;
 mod wfdb;
 
 pub use error::{At, Error, Fault};
+pub use export::{ExportError, Target, export};
 pub use table::{FormatInfo, formats};
 
 use crate::recording::Decoded;

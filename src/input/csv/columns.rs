@@ -122,10 +122,11 @@ fn role(name: &str, unit: &Option<String>, index: usize, values: &[f64]) -> Role
     }
     let counts = || values.iter().zip(0u32..).all(|(value, row)| *value == f64::from(row));
     match folded.as_str() {
+        _ if unit.is_some() => Role::Signal,
         "sample" | "samples" | "index" | "row" | "sample number" | "sample_number" | "sample index" => {
             Role::Index
         }
-        "" if index == 0 && unit.is_none() && counts() => Role::Index,
+        "" if index == 0 && counts() => Role::Index,
         _ => Role::Signal,
     }
 }

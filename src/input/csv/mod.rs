@@ -16,6 +16,9 @@ mod columns;
 mod number;
 mod sidecar;
 mod table;
+mod write;
+
+pub(super) use write::write;
 
 use crate::input::files::{Candidate, Files, file_name, text_of};
 use crate::input::table::{Format, FormatInfo, Score};

@@ -2,8 +2,10 @@
 
 use crate::input::stated::{OLDEST, sex_of};
 use crate::input::{At, Fault};
-use crate::recording::{Age, AgeOrigin, Note, Occasion, SourceFilters, StartTime, Subject};
-use crate::units::{Hertz, Span, Spans};
+use crate::recording::{
+    Age, AgeOrigin, Decoded, Note, Occasion, Quantity, Signal, SourceFilters, StartTime, Subject, Weight,
+};
+use crate::units::{Hertz, SampleRate, Span, Spans};
 use chrono::{FixedOffset, NaiveDate, NaiveDateTime, NaiveTime};
 use serde::de::Error as _;
 use serde::{Deserialize, Deserializer, Serialize};
@@ -181,6 +183,85 @@ impl Sidecar {
         let spans = spans.map(|&[_, start, last]| Span { start, end: last.saturating_add(1).min(length) });
         Some(Spans::from_unordered(spans.collect()))
     }
+}
+
+impl Sidecar {
+    /// What a table of `signals` does not say itself.
+    pub fn of(decoded: &Decoded, signals: &[&Signal], rate: SampleRate) -> Self {
+        let Decoded { subject, occasion, notes, .. } = decoded;
+        let steps: Vec<f64> = signals.iter().map(|signal| signal.resolution.unwrap_or(0.0)).collect();
+        let resolution = match steps.first() {
+            Some(first) if steps.iter().all(|step| step == first) => {
+                (*first > 0.0).then_some(Resolution::All(*first))
+            }
+            _ => Some(Resolution::Each(steps)),
+        };
+        let numbered = || (1..).zip(signals);
+        let uncalibrated = numbered().filter(|(_, signal)| signal.quantity == Quantity::UncalibratedVoltage);
+        let uncalibrated: Vec<usize> = uncalibrated.map(|(number, _)| number).collect();
+        let clipped = numbered().flat_map(|(number, signal)| {
+            signal.samples.saturated().iter().map(move |span| [number, span.start, span.end - 1])
+        });
+        let clipped: Vec<[usize; 3]> = clipped.collect();
+        let cautions = notes.iter().filter(|note| note.weight == Weight::Caution);
+        let cautions: Vec<String> = cautions.map(|note| note.text.clone()).collect();
+        Self {
+            rate: Some(rate.get()),
+            leads: Some(signals.iter().map(|signal| signal.name.clone()).collect()),
+            resolution,
+            not_calibrated: Some(uncalibrated).filter(|list| !list.is_empty()),
+            clipped: Some(clipped).filter(|list| !list.is_empty()),
+            start: occasion.start.and_then(written_start),
+            place: occasion.place.clone(),
+            operator: occasion.operator.clone(),
+            device: occasion.device.clone(),
+            placement: occasion.placement.clone(),
+            manoeuvre: occasion.manoeuvre.clone(),
+            drug: occasion.drug.clone(),
+            note: Some(occasion.remarks.join("\n")).filter(|note| !note.is_empty()),
+            cautions: Some(cautions).filter(|list| !list.is_empty()),
+            subject: SubjectTable::of(subject),
+            filters: FilterTable::of(&occasion.filters),
+            ..Self::default()
+        }
+    }
+
+    /// As TOML.
+    pub fn text(&self) -> String {
+        toml::to_string(self).unwrap_or_default()
+    }
+}
+
+impl SubjectTable {
+    /// `None` when nothing is known.
+    fn of(subject: &Subject) -> Option<Self> {
+        let Subject { name, id, birth_date, sex, age } = subject.clone();
+        (subject != &Subject::default()).then(|| Self {
+            name,
+            id,
+            birth_date: birth_date.and_then(|date| date.to_string().parse().ok()),
+            sex: sex.map(|sex| sex.to_string()),
+            age: age.map(|age| age.years),
+        })
+    }
+}
+
+impl FilterTable {
+    /// `None` when nothing is known.
+    fn of(filters: &SourceFilters) -> Option<Self> {
+        let number = |frequency: Option<Hertz>| frequency.map(Hertz::get);
+        (filters != &SourceFilters::default()).then(|| Self {
+            low_cut: number(filters.low_cut),
+            high_cut: number(filters.high_cut),
+            mains: number(filters.mains),
+        })
+    }
+}
+
+fn written_start(start: StartTime) -> Option<Datetime> {
+    let local = start.local.format("%Y-%m-%dT%H:%M:%S%.f");
+    let zone = start.zone.map(|zone| zone.to_string()).unwrap_or_default();
+    format!("{local}{zone}").parse().ok()
 }
 
 fn filled(text: &Option<String>) -> Option<String> {

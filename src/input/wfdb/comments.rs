@@ -145,7 +145,7 @@ pub(super) fn written(stated: &Stated) -> Vec<String> {
     let mut lines = Vec::new();
     let mut line = |key: &str, value: Option<String>| {
         // A value over several lines would end the comment.
-        let value = value.map(|value| value.split_whitespace().collect::<Vec<_>>().join(" "));
+        let value = value.map(|value| value.lines().collect::<Vec<_>>().join(" "));
         lines.extend(value.map(|value| format!("{key}: {value}")));
     };
     let in_hertz = |frequency: Option<Hertz>| frequency.map(|frequency| format!("{} Hz", frequency.get()));

@@ -4,6 +4,7 @@
 
 mod checks;
 mod comments;
+mod counts;
 mod groups;
 mod header;
 mod locate;
@@ -11,6 +12,9 @@ mod record_line;
 mod signal_line;
 mod signals;
 mod storage;
+mod write;
+
+pub(super) use write::write;
 
 use crate::input::files::{Candidate, Files, file_name, text_of};
 use crate::input::table::{Format, FormatInfo};
