@@ -1,6 +1,7 @@
 //! Why a file could not be read.
 
 use std::fmt;
+use std::io::ErrorKind;
 use std::path::{Path, PathBuf};
 
 /// One file that could not be read.
@@ -101,12 +102,18 @@ impl fmt::Display for Error {
     fn fmt(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
         write!(f, "{}: ", self.file.display())?;
         match &self.fault {
+            Fault::Malformed { at: At::File, expected, found, advice } => {
+                write!(f, "expected {expected}, found {found}; {advice}")
+            }
             Fault::Malformed { at, expected, found, advice } => {
                 write!(f, "{at}: expected {expected}, found {found}; {advice}")
             }
             Fault::Unsupported { what, advice } => write!(f, "{what}; {advice}"),
             Fault::Limit { what, found, max } => {
                 write!(f, "{found} {what}, but at most {max} are read; check the file's header")
+            }
+            Fault::Io(error) if error.kind() == ErrorKind::NotFound => {
+                write!(f, "there is no such file; check the path")
             }
             Fault::Io(error) => write!(f, "{error}; check the path and the permissions"),
         }

@@ -139,7 +139,10 @@ impl fmt::Display for Refusal {
                 found.join(", ")
             ),
             Refusal::AllFlat => {
-                write!(f, "every lead is flat or a gap; check the electrodes' record at its source")
+                write!(
+                    f,
+                    "every lead is flat or a gap, so there is nothing to show; check the recording at its source"
+                )
             }
             Refusal::RateOutOfRange(rate) => write!(
                 f,

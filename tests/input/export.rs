@@ -35,7 +35,7 @@ fn recordings() -> Vec<PathBuf> {
             "ludb/109",
             "rhythms/A0001",
             "rhythms/E00009",
-            "rhythms/JS20004",
+            "rhythms/JS11438",
             "qtdb/sel42",
             "mitdb/201",
             "noise/ma",

@@ -1,5 +1,8 @@
 //! Reading recordings, against values decoded by others.
 
+mod csv;
 mod export;
+mod hostile;
 mod leads;
+mod refused;
 mod wfdb;

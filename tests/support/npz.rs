@@ -42,7 +42,7 @@ impl Npz {
         Self(arrays)
     }
 
-    /// An array of numbers, in the order of memory.
+    /// An array of numbers, row by row.
     pub fn numbers(&self, name: &str) -> &[f64] {
         match self.0.get(name) {
             Some(Array::Numbers(numbers)) => numbers,
@@ -67,8 +67,10 @@ fn array(npy: &[u8]) -> Array {
     let data = &npy[start..];
     let eight = data.chunks_exact(8).map(|word| <[u8; 8]>::try_from(word).expect("eight bytes"));
     match kind {
-        "<f8" => Array::Numbers(eight.map(f64::from_le_bytes).collect()),
-        "<i8" => Array::Numbers(eight.map(|word| i64::from_le_bytes(word) as f64).collect()),
+        "<f8" => Array::Numbers(by_rows(eight.map(f64::from_le_bytes).collect(), &header)),
+        "<i8" => {
+            Array::Numbers(by_rows(eight.map(|word| i64::from_le_bytes(word) as f64).collect(), &header))
+        }
         text => {
             let width: usize =
                 text.strip_prefix("<U").and_then(|width| width.parse().ok()).expect("a text type");
@@ -81,6 +83,16 @@ fn array(npy: &[u8]) -> Array {
             Array::Text(data.chunks_exact(4 * width).map(letters).collect())
         }
     }
+}
+
+/// Turns an array that stands column by column.
+fn by_rows(numbers: Vec<f64>, header: &str) -> Vec<f64> {
+    if !header.contains("'fortran_order': True") {
+        return numbers;
+    }
+    let shape = header.split("'shape': (").nth(1).and_then(|rest| rest.split(')').next()).expect("a shape");
+    let rows: usize = shape.split(',').next().and_then(|rows| rows.trim().parse().ok()).expect("a count");
+    (0..rows).flat_map(|row| numbers.iter().skip(row).step_by(rows).copied()).collect()
 }
 
 fn u16_at(bytes: &[u8], at: usize) -> usize {

@@ -85,8 +85,8 @@ pub(super) fn assign(
 fn wrong_count(columns: usize, names: usize, asking: &Asking) -> Fault {
     Fault::malformed(
         At::File,
-        format!("as many columns as names in `leads` of {}", asking.sidecar),
-        format!("{columns} columns and {names} names"),
+        format!("a name for each of {columns} columns in `leads` of {}", asking.sidecar),
+        names.to_string(),
         "name every column in its order",
     )
 }

@@ -113,7 +113,8 @@ impl Sidecar {
     pub fn parse(text: &str) -> Result<Self, Fault> {
         let sidecar: Self = toml::from_str(text).map_err(|error| {
             let at = error.span().map_or(At::File, |span| cell_of(text, span.start));
-            let found = error.message().trim_end_matches('\n').replace('\n', " ");
+            let found =
+                error.message().trim_end().replace('\n', " ").replace("expected f64", "expected a number");
             Fault::malformed(at, "the keys and values of a sidecar", found, "correct the sidecar")
         })?;
         if sidecar.unit.is_some() && sidecar.counts_per_mv.is_some() {

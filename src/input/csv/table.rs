@@ -27,11 +27,14 @@ pub(super) struct Cells {
     pub decimals: u32,
 }
 
-/// Whether most cells of the first rows are numbers.
+/// Whether most cells of the first rows are numbers, or a lonely header row states units.
 pub(super) fn looks_like_one(head: &str) -> bool {
     let delimiter = delimiter(head);
     let mut rows = head.lines().filter(|line| !line.trim().is_empty() && !line.starts_with('#'));
-    rows.next();
+    let first = rows.next().unwrap_or_default();
+    if rows.clone().next().is_none() {
+        return first.to_lowercase().contains("v]");
+    }
     let (mut numbers, mut cells) = (0, 0);
     for cell in rows.take(20).flat_map(|row| row.split(char::from(delimiter))) {
         let cell = cell.trim().trim_matches('"');

@@ -6,6 +6,7 @@ use super::storage::Storage;
 use crate::input::files::{Files, beside};
 use crate::input::limits::{MAX_SAMPLES, at_most};
 use crate::input::{At, Error, Fault};
+use std::io::ErrorKind;
 use std::ops::Range;
 use std::path::Path;
 
@@ -36,7 +37,7 @@ impl<'a> Group<'a> {
             Storage::Null => Vec::new(),
             _ => {
                 let path = beside(header, &line.file, line.at).map_err(|fault| fault.within(header))?;
-                files.data(&path)?
+                files.data(&path).map_err(|error| missing(error, header, line))?
             }
         };
         Ok(Self { lines, storage, frame, bytes })
@@ -103,6 +104,20 @@ impl<'a> Group<'a> {
             counts
         });
         split.collect()
+    }
+}
+
+/// A signal file that is not there is the header's business.
+fn missing(error: Error, header: &Path, line: &SignalLine) -> Error {
+    match &error.fault {
+        Fault::Io(io) if io.kind() == ErrorKind::NotFound => Fault::malformed(
+            line.at,
+            format!("the signal file {} beside the header", line.file),
+            "no such file",
+            "put it there, or correct the name",
+        )
+        .within(header),
+        _ => error,
     }
 }
 

@@ -1,0 +1,118 @@
+//! Damaged files: an error or a sound recording, never a panic.
+
+use crate::support::{TempDir, project, shared};
+use leadsheet::input::{self, Target};
+use leadsheet::recording::Recording;
+use std::path::{Path, PathBuf};
+
+/// The files of one recording, the one to be read first.
+struct Sample(Vec<(String, Vec<u8>)>);
+
+impl Sample {
+    fn of(paths: &[PathBuf]) -> Self {
+        let file = |path: &PathBuf| {
+            let name = path.file_name().expect("a name").to_string_lossy().into_owned();
+            (name, std::fs::read(path).unwrap_or_else(|error| panic!("{}: {error}", path.display())))
+        };
+        Self(paths.iter().map(file).collect())
+    }
+}
+
+fn samples() -> Vec<Sample> {
+    let hostile = project().join("tests/hostile");
+    let mut samples = vec![
+        Sample::of(&[hostile.join("wfdb-unknown-leads.hea"), hostile.join("samples.dat")]),
+        Sample::of(&[hostile.join("csv-time-unsteady.csv")]),
+        Sample::of(&[hostile.join("sidecar-too-few-leads.csv"), hostile.join("sidecar-too-few-leads.toml")]),
+    ];
+    if let Some(folder) = shared("formats/wfdb") {
+        let record =
+            |names: &[&str]| Sample::of(&names.iter().map(|name| folder.join(name)).collect::<Vec<_>>());
+        let formats: Vec<String> = [String::from("binformats.hea")]
+            .into_iter()
+            .chain((0..10).map(|at| format!("binformats.d{at}")))
+            .collect();
+        samples.extend([
+            record(&["100_3chan.hea", "100_3chan.dat"]),
+            record(&["310derive.hea", "310derive.dat"]),
+            record(&["311derive_4.hea", "311derive_4.dat"]),
+            record(&["3000003_0003.hea", "3000003_0003.dat"]),
+            record(&["test01_00s_skewframe.hea", "test01_00s.dat"]),
+            record(&formats.iter().map(String::as_str).collect::<Vec<_>>()),
+        ]);
+    }
+    samples
+}
+
+/// Reads what stands in the folder, makes a recording of it and exports it.
+fn use_it(folder: &Path, first: &str) {
+    let Ok(decoded) = input::read(&folder.join(first)) else { return };
+    for signal in &decoded.signals {
+        let samples = &signal.samples;
+        assert!(
+            samples.values_with_gaps().iter().all(|value| value.is_finite()),
+            "{first}: a value is not finite"
+        );
+        assert!(
+            samples.gaps().iter().chain(samples.saturated().iter()).all(|span| span.end <= samples.len())
+        );
+    }
+    for target in [Target::Csv, Target::Wfdb] {
+        let _ = input::export(&decoded, target, "again");
+    }
+    if let Ok(recording) = Recording::from_decoded(decoded) {
+        assert!(recording.present().all(|(_, samples)| samples.len() == recording.length));
+        let _ = recording.printable();
+    }
+}
+
+fn put(folder: &Path, name: &str, bytes: &[u8]) {
+    std::fs::write(folder.join(name), bytes).expect("a file is written");
+}
+
+#[test]
+fn a_file_cut_short_anywhere_is_an_error_or_a_sound_recording() {
+    for Sample(files) in samples() {
+        let folder = TempDir::new();
+        files.iter().for_each(|(name, bytes)| put(folder.path(), name, bytes));
+        for (name, bytes) in &files {
+            for part in 0..64 {
+                put(folder.path(), name, &bytes[..bytes.len() * part / 64]);
+                use_it(folder.path(), &files[0].0);
+            }
+            put(folder.path(), name, bytes);
+        }
+    }
+}
+
+#[test]
+fn flipped_bytes_are_an_error_or_a_sound_recording() {
+    // A small generator with a fixed seed, so that every run flips the same (xorshift, Marsaglia 2003 (m)).
+    let mut state = 0x9e37_79b9_7f4a_7c15u64;
+    let mut next = |below: usize| {
+        state ^= state << 13;
+        state ^= state >> 7;
+        state ^= state << 17;
+        (state % below.max(1) as u64) as usize
+    };
+    for Sample(files) in samples() {
+        let folder = TempDir::new();
+        files.iter().for_each(|(name, bytes)| put(folder.path(), name, bytes));
+        for round in 0..600 {
+            // Most damage goes into the text, where it does most.
+            let (name, bytes) = &files[if round % 4 == 0 { next(files.len()) } else { 0 }];
+            let mut damaged = bytes.clone();
+            for _ in 0..=next(4) {
+                let at = next(damaged.len());
+                damaged[at] = match next(3) {
+                    0 => damaged[at] ^ (1 << next(8)),
+                    1 => b"0123456789-+./: \n\tx(),;\"#"[next(25)],
+                    _ => next(256) as u8,
+                };
+            }
+            put(folder.path(), name, &damaged);
+            use_it(folder.path(), &files[0].0);
+            put(folder.path(), name, bytes);
+        }
+    }
+}
