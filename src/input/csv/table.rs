@@ -134,11 +134,13 @@ struct Rows {
 }
 
 impl Rows {
-    /// A header row holds more text than numbers.
+    /// A header row holds text; words that stand for a missing number make none.
     fn is_header(&self, record: &ByteRecord) -> bool {
-        let filled = record.iter().filter(|cell| !cell.is_empty());
-        let numbers = filled.clone().filter(|cell| parse(cell, self.comma).is_some()).count();
-        filled.count() > 2 * numbers
+        const MISSING: [&[u8]; 5] = [b"nan", b"na", b"n/a", b"inf", b"-"];
+        record.iter().any(|cell| {
+            let word = cell.to_ascii_lowercase();
+            !cell.is_empty() && parse(cell, self.comma).is_none() && !MISSING.contains(&word.as_slice())
+        })
     }
 
     fn append(&mut self, record: &ByteRecord, line: u64, columns: &mut [Cells]) -> Result<(), Fault> {

@@ -96,12 +96,12 @@ fn signal_line(
     let several = if samples > 1 { format!("x{samples}") } else { String::new() };
     let unit = match &signal.quantity {
         Quantity::Voltage | Quantity::UncalibratedVoltage => "mV".to_owned(),
-        Quantity::Other(unit) => unit.split_whitespace().collect::<Vec<_>>().join("_"),
+        Quantity::Other(unit) => unit.split_ascii_whitespace().collect::<Vec<_>>().join("_"),
     };
     let bits = width.bits();
     let sum = counts.checksum(width, samples * frames);
     let first = counts.at(0, width);
-    let name = signal.name.split_whitespace().collect::<Vec<_>>().join(" ");
+    let name = signal.name.lines().collect::<Vec<_>>().join(" ");
     let gain = counts.gain;
     format!("{file} {bits}{several} {gain}({})/{unit} {bits} 0 {first} {sum} 0 {name}", counts.baseline)
         .trim_end()
