@@ -3,4 +3,5 @@
 mod architecture;
 mod batch;
 mod input;
+mod measure;
 mod support;

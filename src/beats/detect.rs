@@ -12,6 +12,9 @@ const REFRACTORY: Seconds = Seconds::literal(0.250);
 /// Half the neighbourhood whose strongest peaks set the threshold.
 const NEIGHBOURHOOD: Seconds = Seconds::literal(8.0);
 
+const FORERUNNER: Seconds = Seconds::literal(0.280);
+const FORERUNNER_STRENGTH: f64 = 0.6;
+
 /// A first fiducial for each QRS, ascending.
 pub(super) fn qrs(channels: &Channels, rate: SampleRate) -> Vec<usize> {
     let envelope = envelope(channels, rate);
@@ -38,7 +41,18 @@ pub(super) fn qrs(channels: &Channels, rate: SampleRate) -> Vec<usize> {
             found.push(peak);
         }
     }
-    found
+    without_forerunners(&found, &envelope, rate)
+}
+
+/// Leaves out what stands shortly before a much stronger complex: an atrial pacing spike or a P that
+/// passed the threshold. No ventricle is activated twice so soon with so different a strength.
+fn without_forerunners(found: &[usize], envelope: &[f64], rate: SampleRate) -> Vec<usize> {
+    let near = rate.count(FORERUNNER);
+    let runs_before = |pair: &[usize]| {
+        pair[1] - pair[0] < near && envelope[pair[0]] < FORERUNNER_STRENGTH * envelope[pair[1]]
+    };
+    let dropped = found.windows(2).map(runs_before).chain(std::iter::once(false));
+    found.iter().zip(dropped).filter(|(_, dropped)| !dropped).map(|(&peak, _)| peak).collect()
 }
 
 /// The spatial velocity in the band, in mV/s, smoothed.

@@ -1,5 +1,6 @@
 //! What the tests share: temporary folders, the annotated recordings, the program itself.
 
+pub mod annotations;
 pub mod golden;
 pub mod npz;
 

@@ -1,0 +1,3 @@
+//! Beats, marks and intervals against others' annotations and known truths.
+
+mod beats;
