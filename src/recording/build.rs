@@ -57,7 +57,9 @@ impl Recording {
         if self.leads.iter().any(|(_, channel)| named(channel)) {
             return Err(Refusal::AllFlat);
         }
-        Err(Refusal::NoKnownLead { found: self.extra.iter().map(|extra| extra.name.clone()).collect() })
+        Err(Refusal::NoKnownLead {
+            found: self.extra.iter().map(|extra| shown(&extra.name).to_owned()).collect(),
+        })
     }
 }
 
@@ -77,10 +79,10 @@ impl Sorted {
         for signal in signals {
             match &signal.quantity {
                 Quantity::Other(unit) => {
-                    sorted.left_out.push(format!("{} ({unit})", signal.name));
+                    sorted.left_out.push(format!("{} ({unit})", shown(&signal.name)));
                     continue;
                 }
-                Quantity::UncalibratedVoltage => uncalibrated.push(signal.name.clone()),
+                Quantity::UncalibratedVoltage => uncalibrated.push(shown(&signal.name).to_owned()),
                 Quantity::Voltage => {}
             }
             match lead_of(&signal.name) {
@@ -113,6 +115,11 @@ impl Sorted {
         }
         Ok(sorted)
     }
+}
+
+/// A name for messages.
+fn shown(name: &str) -> &str {
+    if name.is_empty() { "a signal without a name" } else { name }
 }
 
 /// The rate that most leads have (the higher of two), else that of most other potentials; and the longest
@@ -165,7 +172,7 @@ fn extra(others: Vec<Signal>, rate: SampleRate, length: usize, notes: &mut Vec<N
         match channel(samples, rate, length) {
             Channel::Recorded(samples) | Channel::Derived(samples) => extra.push(Extra { name, samples }),
             Channel::Absent(absence) => {
-                notes.push(Note::information(format!("{name} is left out: {absence}")))
+                notes.push(Note::information(format!("{} is left out: {absence}", shown(&name))))
             }
         }
     }

@@ -84,6 +84,14 @@ fn delimiters_decimal_commas_and_spellings_of_units_are_understood() {
 }
 
 #[test]
+fn rows_of_whole_numbers_are_a_table_and_no_record() {
+    let sidecar = "rate = 500\ncounts_per_mv = 1000\nleads = [\"I\", \"II\", \"V1\", \"V2\"]";
+    let decoded = read(&[("table.txt", "10\t8\t57\t66\n11\t6\t56\t67\n"), ("table.toml", sidecar)]);
+    assert_eq!(decoded.source.format, "csv");
+    assert_eq!(values(&decoded, 3), [Some(0.066), Some(0.067)]);
+}
+
+#[test]
 fn a_steady_time_column_gives_the_rate() {
     for (heading, step, rate) in
         [("time [s]", 0.002, 500.0), ("t_ms", 4.0, 250.0), ("Time (s)", 0.002_778, 360.0)]

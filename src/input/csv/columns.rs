@@ -94,7 +94,7 @@ fn wrong_count(columns: usize, names: usize, asking: &Asking) -> Fault {
 /// `II [mV]`, `II (mV)`, `II_mV`: name and unit. Words in brackets that are known not to be a unit stay.
 fn split(heading: &str) -> (&str, Option<&str>) {
     const NO_UNITS: [&str; 3] = ["einthoven", "goldberger", "wilson"];
-    let heading = heading.trim();
+    let heading = heading.trim().trim_matches('\'').trim();
     for (open, close) in [('[', ']'), ('(', ')')] {
         if let Some((name, unit)) = heading.strip_suffix(close).and_then(|rest| rest.rsplit_once(open))
             && !unit.trim().is_empty()
@@ -161,6 +161,7 @@ mod tests {
             ("Lead I (Einthoven)", "Lead I (Einthoven)", None),
             ("lead_V", "lead_V", None),
             ("V1", "V1", None),
+            ("'MLII'", "MLII", None),
             ("time_s", "time", Some("s")),
             ("t_ms", "t", Some("ms")),
             ("MDC_ECG_LEAD_V1", "MDC_ECG_LEAD_V1", None),

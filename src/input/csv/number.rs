@@ -10,8 +10,11 @@ pub(super) struct Number {
     pub mark: Option<u8>,
 }
 
+/// Far beyond any count or potential, and safe to scale.
+const LARGEST: f64 = 1e15;
+
 /// A finite number in decimal or scientific notation, with a point, or a comma where `comma` allows it.
-/// `NaN`, `inf` and digit grouping are none.
+/// `NaN`, `inf` and digit grouping are none, nor is what no unit makes a potential.
 pub(super) fn parse(cell: &[u8], comma: bool) -> Option<Number> {
     let at = cell.iter().position(|byte| *byte == b'.' || (comma && *byte == b','));
     let plain = cell
@@ -34,7 +37,7 @@ pub(super) fn parse(cell: &[u8], comma: bool) -> Option<Number> {
         None => 0,
     };
     let exponent = cell.iter().any(|byte| matches!(byte, b'e' | b'E'));
-    value.is_finite().then_some(Number { value, decimals: if exponent { 15 } else { decimals }, mark })
+    (value.abs() <= LARGEST).then_some(Number { value, decimals: if exponent { 15 } else { decimals }, mark })
 }
 
 #[cfg(test)]
@@ -47,7 +50,9 @@ mod tests {
         assert_eq!(value("-0.125", false), Some(-0.125));
         assert_eq!(value("-0,125", true), Some(-0.125));
         assert_eq!(value("1e-3", false), Some(0.001));
-        for cell in ["NaN", "inf", "-", "", "1,5", "1.5.2", "1e999", "0x10", "mV", "1 2", "\u{2212}1"] {
+        for cell in
+            ["NaN", "inf", "-", "", "1,5", "1.5.2", "1e999", "1e300", "0x10", "mV", "1 2", "\u{2212}1"]
+        {
             assert_eq!(value(cell, false), None, "{cell}");
         }
         assert_eq!(value("1.234,5", true), None);

@@ -174,7 +174,10 @@ pub(super) fn written(stated: &Stated) -> Vec<String> {
     for (signal, spans) in clipped {
         let spans: Vec<String> =
             spans.iter().map(|span| format!("{}-{}", span.start, span.end - 1)).collect();
-        line("clipped", Some(format!("{} {}", signal + 1, spans.join(" "))));
+        // Old readers take lines of up to 255 characters.
+        for part in spans.chunks(10) {
+            line("clipped", Some(format!("{} {}", signal + 1, part.join(" "))));
+        }
     }
     for remark in occasion.remarks.iter().flat_map(|remark| remark.lines()).map(str::trim) {
         let alone = Stated::of(&[remark.to_owned()]);

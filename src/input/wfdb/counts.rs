@@ -91,11 +91,11 @@ fn narrowest(lowest: f64, highest: f64) -> Option<(Width, f64)> {
     None
 }
 
-/// Steps per unit; where that is a whole number but for rounding, the whole number.
+/// Steps per unit, without the digits that only rounding left behind it.
 fn per_unit(step: f64) -> f64 {
     let gain = 1.0 / step;
-    let whole = gain.round();
-    if (gain - whole).abs() <= 1e-9 * whole { whole } else { gain }
+    let short = format!("{gain:.11e}").parse().unwrap_or(gain);
+    if (gain - short).abs() <= 1e-14 * gain { short } else { gain }
 }
 
 /// The power of ten that makes all values whole.

@@ -6,6 +6,7 @@ use super::storage::Storage;
 use crate::input::files::{Files, beside};
 use crate::input::limits::{MAX_SAMPLES, at_most};
 use crate::input::{At, Error, Fault};
+use crate::recording::Note;
 use std::io::ErrorKind;
 use std::ops::Range;
 use std::path::Path;
@@ -76,6 +77,15 @@ impl<'a> Group<'a> {
             "the file is cut short, or the header belongs to another file: copy both again",
         );
         Err(fault.within(&header.with_file_name(&line.file)))
+    }
+
+    /// What a file holds beyond the stated length.
+    pub fn surplus(&self, frames: u64) -> Option<Note> {
+        let more = self.frames()?.checked_sub(frames).filter(|more| *more > 0)?;
+        let file = &self.lines.first()?.file;
+        Some(Note::information(format!(
+            "{file} holds {more} more samples than the header states; they are left out"
+        )))
     }
 
     /// The counts of every signal, in the order of the lines.

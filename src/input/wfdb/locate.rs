@@ -38,10 +38,11 @@ fn own_score(head: &[u8]) -> Score {
         return 0;
     }
     let sound_record = RecordLine::parse(first, 1).is_ok();
-    let second = lines.next().map(|line| line.split_ascii_whitespace().nth(1).unwrap_or_default());
-    let format_follows = second.is_some_and(|token| token.starts_with(|c: char| c.is_ascii_digit()));
-    // A number in front would rather be a row of a table than the name of a record, unless the next line
-    // names a signal file.
+    let mut second = lines.next().unwrap_or_default().split_ascii_whitespace();
+    // Rows of numbers are a table: a signal file has a letter in its name.
+    let file = second.next().is_some_and(|file| file == "~" || file.contains(char::is_alphabetic));
+    let format_follows =
+        file && second.next().is_some_and(|token| token.starts_with(|c: char| c.is_ascii_digit()));
     match (sound_record, format_follows, first.starts_with(|c: char| c.is_ascii_alphabetic())) {
         (true, true, _) => 95,
         (_, true, true) | (true, false, true) => 50,

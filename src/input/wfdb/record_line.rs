@@ -24,7 +24,7 @@ pub(super) struct RecordLine {
     pub unreadable_start: Option<String>,
 }
 
-/// header(5): "if the sampling frequency is omitted, a value of 250 samples per second per signal is assumed" (m).
+/// header(5): "if it is missing, a value of 250 […] is assumed" (r).
 const DEFAULT_RATE: f64 = 250.0;
 
 impl RecordLine {

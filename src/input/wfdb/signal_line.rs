@@ -99,6 +99,9 @@ impl Layout {
     }
 }
 
+/// Counts per unit of any converter and unit; beyond, values could overflow.
+const GAINS: std::ops::RangeInclusive<f64> = 1e-9..=1e15;
+
 type Scale = (Option<f64>, Option<i64>, Option<String>);
 
 fn scale_of(text: &str, at: At) -> Result<Scale, Fault> {
@@ -115,7 +118,7 @@ fn scale_of(text: &str, at: At) -> Result<Scale, Fault> {
         None => (number, None),
     };
     let gain: f64 = gain.parse().map_err(|_| bad())?;
-    if !gain.is_finite() {
+    if !(gain == 0.0 || GAINS.contains(&gain.abs())) {
         return Err(bad());
     }
     Ok((Some(gain).filter(|gain| *gain != 0.0), baseline, unit))

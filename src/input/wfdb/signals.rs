@@ -14,7 +14,8 @@ use crate::recording::{Note, Quantity, Samples, Signal};
 use crate::units::{SampleRate, Span, Spans};
 use std::path::Path;
 
-/// header(5): "if the gain is omitted or 0, 200 counts per unit are assumed, and the signal is not calibrated" (m).
+/// header(5): "If the gain is zero or missing, this indicates that the signal amplitude is uncalibrated; in such
+/// cases, a value of 200 […] may be assumed" (r).
 const DEFAULT_GAIN: f64 = 200.0;
 
 /// Every signal of the header, in its order.
@@ -28,6 +29,7 @@ pub(super) fn read(
     let frames = frames(header, &groups).map_err(|fault| fault.within(path))?;
     for group in &groups {
         group.require(frames, path)?;
+        notes.extend(group.surplus(frames));
     }
     let mut signals = Vec::with_capacity(header.signals.len());
     let mut checks = Checks::default();

@@ -204,7 +204,7 @@ fn signed(word: u32, bits: u32) -> i32 {
 mod tests {
     use super::*;
 
-    // Source: signal(5), the layouts of formats 212, 310 and 311 in words (m); the samples are chosen by hand.
+    // Source: signal(5), the layouts of formats 212, 310 and 311 in words (r); the samples are chosen by hand.
     #[test]
     fn packed_samples_unpack_with_their_signs() {
         assert_eq!(Storage::Packed12.decode(&[0x01, 0xf8, 0xff], 2), [-2047, -1]);
