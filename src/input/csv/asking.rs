@@ -40,6 +40,13 @@ impl Asking<'_> {
         )
     }
 
+    pub fn time_unit(&self, column: &str) -> Fault {
+        Fault::unsupported(
+            format!("the time column `{column}` states no unit, so the sampling rate is not known"),
+            format!("write its heading as `{column} [s]` or `{column} [ms]`"),
+        )
+    }
+
     /// `column` is the first of those without a unit; `None` when all are without.
     pub fn unit(&self, column: Option<&str>, heading: &str) -> Fault {
         let what = match column {

@@ -7,8 +7,14 @@ use crate::input::{At, Fault};
 use crate::recording::Note;
 use crate::units::SampleRate;
 
-/// A time step may differ from the usual one by this part of it, or by the last digit written.
+/// A time step may differ from the usual one by this part of it, or by the last digit written (own choice).
 const UNSTEADY: f64 = 0.1;
+
+/// All steps together may be off by this part of one, or by the last digit written (own choice).
+const DRIFTED: f64 = 0.5;
+
+/// The stated and the found rate may differ by this part (own choice).
+const SAME_RATE: f64 = 1e-3;
 
 /// The stated rate, checked against the time column where there is one; or the rate of the time column.
 pub(super) fn rate(
@@ -19,72 +25,71 @@ pub(super) fn rate(
     notes: &mut Vec<Note>,
 ) -> Result<SampleRate, Fault> {
     let stated = sidecar.rate.and_then(SampleRate::new);
-    let column = columns.iter().find(|column| column.role == Role::Time);
-    let unit = column.map(|column| {
-        // A column named `seconds` states its unit by its name.
-        column
-            .unit
-            .as_deref()
-            .and_then(seconds_per)
-            .or_else(|| seconds_per(&column.name).filter(|_| column.name.len() > 2))
-    });
-    let (column, unit) = match (column, unit.flatten(), stated) {
-        (Some(column), Some(unit), _) => (column, unit),
-        (None, _, Some(stated)) => return Ok(stated),
-        (Some(column), None, Some(stated)) => {
-            notes.push(Note::information(format!(
-                "the column `{}` states no unit and was left out; the rate is that of {}",
-                column.name, asking.sidecar
-            )));
-            return Ok(stated);
-        }
-        (Some(column), None, None) => {
-            return Err(Fault::unsupported(
-                format!(
-                    "the time column `{}` states no unit, so the sampling rate is not known",
-                    column.name
-                ),
-                format!("write its heading as `{0} [s]` or `{0} [ms]`", column.name),
-            ));
-        }
-        (None, _, None) => {
-            return Err(asking.rate());
-        }
+    let Some(column) = columns.iter().find(|column| column.role == Role::Time) else {
+        return stated.ok_or_else(|| asking.rate());
     };
-    let found = Steady::of(column, unit, lines)?;
-    if let Some(stated) = stated {
-        if (stated.get() - found.rate).abs() > found.uncertainty + 1e-3 * found.rate {
-            return Err(Fault::unsupported(
-                format!(
-                    "the time column goes with {:.6} samples per second, but {} states {}",
-                    found.rate,
-                    asking.sidecar,
-                    stated.get()
-                ),
-                "correct the one that is wrong",
-            ));
-        }
+    let Some(unit) = unit_of(column) else {
+        let stated = stated.ok_or_else(|| asking.time_unit(&column.name))?;
+        notes.push(Note::information(format!(
+            "the column `{}` states no unit and was left out; the rate is that of {}",
+            column.name, asking.sidecar
+        )));
         return Ok(stated);
+    };
+    let found = TimeColumn { column, lines, unit }.rate()?;
+    match stated {
+        Some(stated) if found.agrees_with(stated) => Ok(stated),
+        Some(stated) => Err(Fault::unsupported(
+            format!(
+                "the time column goes with {:.6} samples per second, but {} states {}",
+                found.per_second,
+                asking.sidecar,
+                stated.get()
+            ),
+            "correct the one that is wrong",
+        )),
+        None => SampleRate::new(found.rounded()).ok_or_else(|| does_not_advance(column)),
     }
-    let whole = found.rate.round();
-    let rate = if (found.rate - whole).abs() <= found.uncertainty { whole } else { found.rate };
-    SampleRate::new(rate).ok_or_else(|| found.unusable(column))
 }
 
-/// A time column that goes in equal steps.
-struct Steady {
-    /// Samples per second.
-    rate: f64,
+/// Seconds in one of the column's unit; a column named `seconds` states it by its name.
+fn unit_of(column: &Column) -> Option<f64> {
+    let named = || Some(&column.name).filter(|name| name.len() > 2).and_then(|name| seconds_per(name));
+    column.unit.as_deref().and_then(seconds_per).or_else(named)
+}
+
+/// A rate that was found.
+struct Found {
+    per_second: f64,
     /// What the last digit written leaves open.
     uncertainty: f64,
 }
 
-impl Steady {
-    fn of(column: &Column, unit: f64, lines: &[u32]) -> Result<Self, Fault> {
-        let times = &column.values;
-        let digit = unit * 10f64.powi(-(column.decimals.min(15) as i32));
+impl Found {
+    fn agrees_with(&self, stated: SampleRate) -> bool {
+        (stated.get() - self.per_second).abs() <= self.uncertainty + SAME_RATE * self.per_second
+    }
+
+    /// The whole number, where the digits leave that open.
+    fn rounded(&self) -> f64 {
+        let whole = self.per_second.round();
+        if (self.per_second - whole).abs() <= self.uncertainty { whole } else { self.per_second }
+    }
+}
+
+struct TimeColumn<'a> {
+    column: &'a Column,
+    lines: &'a [u32],
+    /// Seconds in one of the column's unit.
+    unit: f64,
+}
+
+impl TimeColumn<'_> {
+    /// From first to last row, if all steps are equal as far as the digits tell.
+    fn rate(&self) -> Result<Found, Fault> {
+        let times = &self.column.values;
         if let Some(row) = times.iter().position(|time| time.is_nan()) {
-            return Err(unsteady(column, lines, row, "a time".into(), "an empty cell".into()));
+            return Err(self.unsteady(row, "a time", "an empty cell"));
         }
         let (Some(first), Some(last), true) = (times.first(), times.last(), times.len() >= 2) else {
             return Err(Fault::unsupported(
@@ -92,56 +97,61 @@ impl Steady {
                 "state `rate` in the sidecar",
             ));
         };
-        let mut steps: Vec<f64> = times.windows(2).map(|pair| (pair[1] - pair[0]) * unit).collect();
-        let usual = {
-            let middle = steps.len() / 2;
-            *steps.clone().select_nth_unstable_by(middle, f64::total_cmp).1
-        };
-        if !(usual.is_finite() && usual > digit * 0.5) {
-            return Err(Fault::unsupported(
-                format!("the column `{}` does not advance from row to row", column.name),
-                "write the time with more digits, or state `rate` in the sidecar and leave the column out",
-            ));
-        }
-        let allowed = (UNSTEADY * usual).max(1.01 * digit);
-        if let Some(row) = steps.iter().position(|step| (step - usual).abs() > allowed) {
-            let expected = format!("a step of {:.6} s, as between most rows", usual);
-            return Err(unsteady(column, lines, row + 1, expected, format!("{:.6} s", steps[row])));
-        }
-        let duration = (last - first) * unit;
-        let count = (times.len() - 1) as f64;
-        let mean = duration / count;
-        // Small differences must not add up to a drift either.
-        for (row, step) in steps.iter_mut().enumerate() {
-            *step = (times[row + 1] - first) * unit - mean * (row + 1) as f64;
-        }
-        if let Some(row) = steps.iter().position(|off| off.abs() > (0.5 * mean).max(1.01 * digit)) {
-            let expected = format!("rows {:.6} s apart from first to last", mean);
-            return Err(unsteady(
-                column,
-                lines,
-                row + 1,
-                expected,
-                format!("a time {:.6} s off", steps[row]),
-            ));
-        }
-        let rate = count / duration;
-        Ok(Self { rate, uncertainty: rate * digit / duration + 1e-9 * rate })
+        let digit = self.unit * 10f64.powi(-(self.column.decimals.min(15) as i32));
+        self.check_steps(digit)?;
+        let (duration, count) = ((last - first) * self.unit, (times.len() - 1) as f64);
+        self.check_drift(duration / count, digit)?;
+        let per_second = count / duration;
+        Ok(Found { per_second, uncertainty: per_second * (digit / duration + 1e-9) })
     }
 
-    fn unusable(&self, column: &Column) -> Fault {
-        Fault::unsupported(
-            format!("the column `{}` goes with {} samples per second", column.name, self.rate),
-            "correct the times, or state `rate` in the sidecar and leave the column out",
+    fn check_steps(&self, digit: f64) -> Result<(), Fault> {
+        let steps: Vec<f64> =
+            self.column.values.windows(2).map(|pair| (pair[1] - pair[0]) * self.unit).collect();
+        let middle = steps.len() / 2;
+        let usual = *steps.clone().select_nth_unstable_by(middle, f64::total_cmp).1;
+        if usual < digit / 2.0 {
+            return Err(does_not_advance(self.column));
+        }
+        let allowed = (UNSTEADY * usual).max(1.01 * digit);
+        match steps.iter().position(|step| (step - usual).abs() > allowed) {
+            None => Ok(()),
+            Some(row) => Err(self.unsteady(
+                row + 1,
+                &format!("a step of {usual:.6} s, as between most rows"),
+                &format!("{:.6} s", steps[row]),
+            )),
+        }
+    }
+
+    /// Small differences must not add up.
+    fn check_drift(&self, step: f64, digit: f64) -> Result<(), Fault> {
+        let times = &self.column.values;
+        let off = |row: usize| (times[row] - times[0]) * self.unit - step * row as f64;
+        let allowed = (DRIFTED * step).max(1.01 * digit);
+        match (0..times.len()).find(|&row| off(row).abs() > allowed) {
+            None => Ok(()),
+            Some(row) => Err(self.unsteady(
+                row,
+                &format!("rows {step:.6} s apart from first to last"),
+                &format!("a time {:.6} s off", off(row)),
+            )),
+        }
+    }
+
+    fn unsteady(&self, row: usize, expected: &str, found: &str) -> Fault {
+        Fault::malformed(
+            self.lines.get(row).map_or(At::File, |&line| At::Line(line.into())),
+            format!("{expected}, in column `{}`", self.column.name),
+            found,
+            "put in the missing rows with empty cells; if all samples are equally spaced, state `rate` in the sidecar and leave the time column out",
         )
     }
 }
 
-fn unsteady(column: &Column, lines: &[u32], row: usize, expected: String, found: String) -> Fault {
-    Fault::malformed(
-        lines.get(row).map_or(At::File, |&line| At::Line(line.into())),
-        format!("{expected}, in column `{}`", column.name),
-        found,
-        "put in the missing rows with empty cells; if all samples are equally spaced, state `rate` in the sidecar and leave the time column out",
+fn does_not_advance(column: &Column) -> Fault {
+    Fault::unsupported(
+        format!("the column `{}` does not advance from row to row", column.name),
+        "write the time with more digits, or state `rate` in the sidecar and leave the column out",
     )
 }

@@ -126,6 +126,8 @@ fn signals(
 struct Unit {
     quantity: Quantity,
     factor: f64,
+    /// Whether the numbers are counts, so that one is the smallest step.
+    counts: bool,
 }
 
 /// The unit of each signal: from its heading, or else from the sidecar.
@@ -136,10 +138,10 @@ fn units(columns: &[Column], sidecar: &Sidecar, asking: &Asking) -> Result<Vec<U
         let unit = column.unit.as_deref().or(sidecar.unit.as_deref());
         units.push(match (unit, sidecar.counts_per_mv) {
             (Some(unit), _) => match millivolts_per(unit) {
-                Some(factor) => Unit { quantity: Quantity::Voltage, factor },
-                None => Unit { quantity: Quantity::Other(unit.to_owned()), factor: 1.0 },
+                Some(factor) => Unit { quantity: Quantity::Voltage, factor, counts: false },
+                None => Unit { quantity: Quantity::Other(unit.to_owned()), factor: 1.0, counts: false },
             },
-            (None, Some(counts)) => Unit { quantity: Quantity::Voltage, factor: 1.0 / counts },
+            (None, Some(per_mv)) => Unit { quantity: Quantity::Voltage, factor: 1.0 / per_mv, counts: true },
             (None, None) => {
                 without.push(column);
                 continue;
@@ -154,12 +156,11 @@ fn units(columns: &[Column], sidecar: &Sidecar, asking: &Asking) -> Result<Vec<U
 }
 
 fn signal(index: usize, column: Column, unit: Unit, rate: SampleRate, sidecar: &Sidecar) -> Signal {
-    let Unit { mut quantity, factor } = unit;
+    let Unit { mut quantity, factor, counts } = unit;
     if quantity == Quantity::Voltage && sidecar.is_uncalibrated(index) {
         quantity = Quantity::UncalibratedVoltage;
     }
-    let resolution =
-        sidecar.resolution_of(index).or(sidecar.counts_per_mv.map(|_| 1.0)).map(|step| step * factor);
+    let resolution = sidecar.resolution_of(index).or(counts.then_some(1.0)).map(|step| step * factor);
     let values: Vec<f64> = match factor {
         1.0 => column.values,
         _ => column.values.into_iter().map(|value| value * factor).collect(),
