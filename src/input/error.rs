@@ -65,15 +65,23 @@ pub enum At {
     Byte(u64),
 }
 
+/// Characters of a found text in a message.
+const MOST_SHOWN: usize = 400;
+
 impl Fault {
-    /// The bytes break the format's rules at a place.
+    /// The bytes break the format's rules at a place. What was found is shown up to a length.
     pub(crate) fn malformed(
         at: At,
         expected: impl Into<String>,
         found: impl Into<String>,
         advice: impl Into<String>,
     ) -> Self {
-        Self::Malformed { at, expected: expected.into(), found: found.into(), advice: advice.into() }
+        let mut found = found.into();
+        if let Some((end, _)) = found.char_indices().nth(MOST_SHOWN) {
+            found.truncate(end);
+            found.push('\u{2026}');
+        }
+        Self::Malformed { at, expected: expected.into(), found, advice: advice.into() }
     }
 
     /// A sound file that this program can't use.

@@ -132,11 +132,22 @@ pub(super) fn file_name(path: &Path) -> String {
     path.file_name().map(|name| name.to_string_lossy().into_owned()).unwrap_or_default()
 }
 
-/// UTF-8, or else Latin-1, which every byte string is.
+/// UTF-8, or else Latin-1, which every byte string is. Control characters are replaced, so that no source
+/// can steer the terminal that shows its words.
 pub(super) fn text_of(bytes: &[u8]) -> Cow<'_, str> {
     let bytes = bytes.strip_prefix(b"\xef\xbb\xbf").unwrap_or(bytes);
-    match std::str::from_utf8(bytes) {
+    let text: Cow<str> = match std::str::from_utf8(bytes) {
         Ok(text) => text.into(),
         Err(_) => bytes.iter().map(|&byte| char::from(byte)).collect(),
-    }
+    };
+    if text.contains(is_steering) { plain(&text).into() } else { text }
+}
+
+/// The same text with control characters replaced, line ends and tabs aside.
+pub(super) fn plain(text: &str) -> String {
+    text.replace(is_steering, "\u{fffd}")
+}
+
+fn is_steering(c: char) -> bool {
+    c.is_control() && !matches!(c, '\n' | '\r' | '\t')
 }

@@ -1,5 +1,6 @@
 //! The sidecar of a table.
 
+use crate::input::files::plain;
 use crate::input::stated::{OLDEST, sex_of};
 use crate::input::{At, Fault};
 use crate::recording::{
@@ -111,12 +112,14 @@ pub(super) fn looks_like_one(head: &str) -> bool {
 
 impl Sidecar {
     pub fn parse(text: &str) -> Result<Self, Fault> {
-        let sidecar: Self = toml::from_str(text).map_err(|error| {
+        let mut sidecar: Self = toml::from_str(text).map_err(|error| {
             let at = error.span().map_or(At::File, |span| cell_of(text, span.start));
             let found =
                 error.message().trim_end().replace('\n', " ").replace("expected f64", "expected a number");
             Fault::malformed(at, "the keys and values of a sidecar", found, "correct the sidecar")
         })?;
+        sidecar.leads.iter_mut().flatten().for_each(|lead| *lead = plain(lead));
+        sidecar.unit = filled(&sidecar.unit);
         if sidecar.unit.is_some() && sidecar.counts_per_mv.is_some() {
             return Err(Fault::malformed(
                 At::File,
@@ -134,7 +137,7 @@ impl Sidecar {
             name: filled(&table.name),
             id: filled(&table.id),
             birth_date: table.birth_date.and_then(date_of),
-            sex: table.sex.as_deref().and_then(sex_of),
+            sex: filled(&table.sex).as_deref().and_then(sex_of),
             age: table.age.map(|years| Age { years, origin: AgeOrigin::Stated }),
         }
     }
@@ -146,8 +149,8 @@ impl Sidecar {
             high_cut: hertz(table.high_cut),
             mains: hertz(table.mains),
         });
-        let remarks =
-            self.note.iter().flat_map(|note| note.lines()).map(str::trim).filter(|line| !line.is_empty());
+        let note = filled(&self.note).unwrap_or_default();
+        let remarks = note.lines().map(str::trim).filter(|line| !line.is_empty());
         Occasion {
             start: self.start.and_then(start_of),
             place: filled(&self.place),
@@ -162,7 +165,7 @@ impl Sidecar {
     }
 
     pub fn notes(&self) -> Vec<Note> {
-        self.cautions.iter().flatten().map(Note::caution).collect()
+        self.cautions.iter().flatten().map(|text| Note::caution(plain(text))).collect()
     }
 
     /// Of the signal at `index`, counted from 0.
@@ -266,7 +269,7 @@ fn written_start(start: StartTime) -> Option<Datetime> {
 }
 
 fn filled(text: &Option<String>) -> Option<String> {
-    text.as_deref().map(str::trim).filter(|text| !text.is_empty()).map(str::to_owned)
+    text.as_deref().map(plain).map(|text| text.trim().to_owned()).filter(|text| !text.is_empty())
 }
 
 fn date_of(written: Datetime) -> Option<NaiveDate> {

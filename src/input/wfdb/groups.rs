@@ -28,12 +28,21 @@ impl<'a> Group<'a> {
     }
 
     fn open(header: &Path, lines: &'a [SignalLine], files: &mut Files) -> Result<Self, Error> {
-        let (Some(line), frame) =
-            (lines.first(), lines.iter().map(|line| u64::from(line.samples_per_frame)).sum())
-        else {
+        let frame: u64 = lines.iter().map(|line| u64::from(line.samples_per_frame)).sum();
+        let Some(line) = lines.first() else {
             return Err(Fault::unsupported("the record holds no signal", "check its header").within(header));
         };
         let storage = Storage::of(line.format, line.at).map_err(|fault| fault.within(header))?;
+        if storage == Storage::Null && frame != lines.len() as u64 {
+            // Nothing backs the count, so it must not ask for memory.
+            let fault = Fault::malformed(
+                line.at,
+                "one sample a frame for a signal without a file",
+                frame.to_string(),
+                "correct the signal line",
+            );
+            return Err(fault.within(header));
+        }
         let bytes = match storage {
             Storage::Null => Vec::new(),
             _ => {
@@ -133,9 +142,9 @@ fn missing(error: Error, header: &Path, line: &SignalLine) -> Error {
 
 /// Frames of the record: as stated, or as many as every signal file holds.
 pub(super) fn frames(header: &Header, groups: &[Group]) -> Result<u64, Fault> {
-    let held = groups.iter().filter_map(Group::frames).min();
-    let frames = header.record.frames.or(held).unwrap_or(0);
-    if frames == 0 {
+    let held = groups.iter().filter_map(Group::frames).min().unwrap_or(0);
+    let frames = header.record.frames.unwrap_or(held);
+    if held == 0 || frames == 0 {
         return Err(Fault::unsupported(
             "the record holds no samples",
             "check that its files were copied whole",
