@@ -48,7 +48,8 @@ impl Channels {
     }
 
     /// The same with a straight line from 8 ms before to 16 ms after each of `spikes`.
-    pub(super) fn bridged(&self, spikes: &[usize], rate: SampleRate) -> Self {
+    pub fn bridged(&self, spikes: &[usize]) -> Self {
+        let rate = self.rate;
         let mut bridged = self.clone();
         let before = rate.count(Seconds::literal(0.008));
         let after = rate.count(Seconds::literal(0.016));

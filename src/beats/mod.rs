@@ -23,7 +23,7 @@ use crate::units::SampleIndex;
 pub fn find(measured: &Conditioned) -> Beats {
     let channels = Channels::of(measured);
     let spikes = pacing::spikes(&channels);
-    let quiet = channels.bridged(&spikes, measured.rate);
+    let quiet = channels.bridged(&spikes);
     let detected = detect::qrs(&quiet, measured.rate);
     let sorted = classes::sort(&quiet, measured.rate, &detected);
     let all: Vec<Beat> = sorted
@@ -35,5 +35,6 @@ pub fn find(measured: &Conditioned) -> Beats {
         })
         .collect();
     let rhythm = regularity::of(&all, measured.rate, &quiet.gaps);
-    Beats { rate: measured.rate, all, rhythm }
+    let spikes = spikes.into_iter().map(SampleIndex).collect();
+    Beats { rate: measured.rate, all, rhythm, spikes }
 }

@@ -27,6 +27,8 @@ pub struct Beats {
     pub all: Vec<Beat>,
     /// The rhythm they make.
     pub rhythm: Rhythm,
+    /// Pacing spikes, ascending.
+    pub spikes: Vec<SampleIndex>,
 }
 
 /// The rhythm.

@@ -1,7 +1,220 @@
 //! Intervals, axes and amplitudes, each a value or the reason why there is none.
+//!
+//! Marks are made on the representative beat of each class, in every lead, and carried to the beats:
+//! whether a wave is there is one question to all leads together, where it begins and ends is asked
+//! lead by lead, and the leads then agree.
 
+mod amplitude;
+mod axis;
+mod classes;
+mod global;
 mod measured;
 mod measurements;
+mod p_wave;
+mod presence;
+mod qrs;
+mod qtc;
+mod segments;
+mod shape;
+mod slopes;
+mod t_wave;
 
+pub use axis::frontal_axis;
 pub use measured::{Measured, Reading, Reason};
 pub use measurements::{Amplitudes, BeatMarks, LeadMarks, Measurements, Wave};
+pub use qtc::{HIGHEST_RATE, bazett, fridericia};
+
+use crate::average::RepresentativeBeat;
+use crate::beats::{Beats, Channels, Rhythm};
+use crate::recording::{Lead, PerLead};
+use crate::units::{Degrees, Millivolts, PerMinute, Seconds};
+use classes::Marked;
+use global::Intervals;
+
+/// RR may spread so far around its mean for a corrected QT: (longest − shortest) / mean (own limit).
+const STABLE_RR: f64 = 0.20;
+
+/// Measures a recording. `representative` is the beat of the dominant class.
+pub fn measure(
+    channels: &Channels,
+    beats: &Beats,
+    representative: Option<&RepresentativeBeat>,
+) -> Measurements {
+    let rr_change = rr_change(beats);
+    let classes = classes::mark_all(channels, beats, representative, rr_change);
+    let dominant = classes.first().and_then(Option::as_ref);
+    let (rate, rr) = rate_and_rr(beats);
+    let intervals = match dominant {
+        Some(marked) => Intervals::of(marked, &why_no_p(beats, rr_change)),
+        None => Intervals::none(&Reason::TooFewBeats { needed: 1, found: 0 }),
+    };
+    let stable = match &beats.rhythm {
+        Rhythm::Regular(range) => (range.max - range.min) / range.mean <= STABLE_RR,
+        _ => false,
+    };
+    let axes = axes(dominant);
+    let marks = dominant.map(|marked| global::beat(marked, None, Seconds::ZERO, true));
+    Measurements {
+        ventricular_rate: rate,
+        qtc_bazett: qtc::measured(&intervals.qt, &rr, stable, bazett),
+        qtc_fridericia: qtc::measured(&intervals.qt, &rr, stable, fridericia),
+        rr,
+        p_duration: intervals.p_duration,
+        pr: intervals.pr,
+        qrs: intervals.qrs,
+        qt: intervals.qt,
+        p_axis: axes.0,
+        qrs_axis: axes.1,
+        t_axis: axes.2,
+        beats: beat_marks(beats, &classes),
+        lead_beats: PerLead::from_fn(|lead| lead_marks(lead, beats, &classes)),
+        representative: marks,
+        lead_representative: PerLead::from_fn(|lead| lead_mark(dominant?, lead, None, Seconds::ZERO, true)),
+        amplitudes: PerLead::from_fn(|lead| amplitudes(dominant?, lead)),
+        noise: PerLead::from_fn(|lead| noise(dominant?, lead)),
+    }
+}
+
+/// The class of a beat, or the largest where its own has no marks.
+fn class_of<'a>(beats: &Beats, classes: &'a [Option<Marked>], beat: usize) -> Option<&'a Marked> {
+    let own = classes.get(beats.all[beat].class.0).and_then(Option::as_ref);
+    own.or_else(|| classes.first().and_then(Option::as_ref))
+}
+
+fn beat_marks(beats: &Beats, classes: &[Option<Marked>]) -> Vec<BeatMarks> {
+    (0..beats.all.len())
+        .filter_map(|index| {
+            let marked = class_of(beats, classes, index)?;
+            let beat = beats.all[index];
+            let place = marked.place(index);
+            Some(global::beat(
+                marked,
+                place,
+                beats.rate.time_of(beat.fiducial),
+                beat.class == Beats::DOMINANT,
+            ))
+        })
+        .collect()
+}
+
+fn lead_marks(lead: Lead, beats: &Beats, classes: &[Option<Marked>]) -> Option<Vec<LeadMarks>> {
+    (0..beats.all.len())
+        .filter_map(|index| Some((index, class_of(beats, classes, index)?)))
+        .map(|(index, marked)| {
+            let beat = beats.all[index];
+            let dominant = beat.class == Beats::DOMINANT;
+            lead_mark(marked, lead, Some(marked.place(index)?), beats.rate.time_of(beat.fiducial), dominant)
+        })
+        .collect()
+}
+
+fn lead_mark(
+    marked: &Marked,
+    lead: Lead,
+    place: Option<usize>,
+    fiducial: Seconds,
+    dominant: bool,
+) -> Option<LeadMarks> {
+    let signal = marked.beat.names.iter().position(|name| *name == Some(lead))?;
+    let shape = marked.shape();
+    let wave = |mark: &shape::Mark, shift: f64| Wave {
+        onset: mark.onset.map(|onset| fiducial + shape.time(onset + shift)),
+        peak: fiducial + shape.time(mark.peak + shift),
+        offset: fiducial + shape.time(mark.offset + shift),
+    };
+    let p = global::p_shift(marked, place)
+        .zip(marked.p.as_ref())
+        .map(|(shift, (p, _))| wave(&p.each[signal], shift));
+    let t = marked.t.as_ref().map(|(t, shifts)| {
+        wave(&t.each[signal], place.and_then(|place| shifts.get(place).copied()).unwrap_or(0.0))
+    });
+    let found = amplitudes(marked, lead)?;
+    Some(LeadMarks {
+        marks: BeatMarks { dominant, p, qrs: wave(&marked.qrs.each[signal], 0.0), t },
+        visible: [found.p.is_some(), found.r.or(found.q).is_some(), found.t.is_some()],
+    })
+}
+
+fn amplitudes(marked: &Marked, lead: Lead) -> Option<Amplitudes> {
+    let signal = marked.beat.names.iter().position(|name| *name == Some(lead))?;
+    Some(amplitude::of_lead(
+        &marked.beat.signals[signal],
+        &marked.shape(),
+        marked.p.as_ref().map(|(p, _)| &p.each[signal]),
+        &marked.qrs.each[signal],
+        marked.t.as_ref().map(|(t, _)| &t.each[signal]),
+    ))
+}
+
+/// Noise of a single beat: what the average leaves, times the root of the beats used.
+fn noise(marked: &Marked, lead: Lead) -> Option<Millivolts> {
+    marked.beat.noise(lead).map(|noise| noise * (marked.beat.used.len() as f64).sqrt())
+}
+
+fn rate_and_rr(beats: &Beats) -> (Measured<PerMinute>, Measured<Seconds>) {
+    let intervals: Vec<f64> = beats
+        .all
+        .windows(2)
+        .map(|pair| beats.rate.duration(pair[1].fiducial.0 - pair[0].fiducial.0).get())
+        .collect();
+    let (mean, spread) = match &beats.rhythm {
+        Rhythm::Regular(range) | Rhythm::Irregular(range) => {
+            let squares: f64 = intervals.iter().map(|rr| (rr - range.mean.get()).powi(2)).sum();
+            (range.mean.get(), Seconds::new((squares / intervals.len() as f64).sqrt()))
+        }
+        Rhythm::Uncertain(_) if !intervals.is_empty() => {
+            (intervals.iter().sum::<f64>() / intervals.len() as f64, None)
+        }
+        Rhythm::Uncertain(_) => {
+            let reason = Reason::TooFewBeats { needed: 2, found: beats.all.len() };
+            return (Measured::NotMeasurable(reason.clone()), Measured::NotMeasurable(reason));
+        }
+    };
+    match (PerMinute::new(60.0 / mean), Seconds::new(mean)) {
+        (Some(rate), Some(rr)) => (
+            Measured::Value(Reading { value: rate, spread: None }),
+            Measured::Value(Reading { value: rr, spread }),
+        ),
+        _ => (Measured::NotMeasurable(Reason::UnstableRr), Measured::NotMeasurable(Reason::UnstableRr)),
+    }
+}
+
+/// Median change from one RR to the next, over RR.
+fn rr_change(beats: &Beats) -> f64 {
+    let rr: Vec<f64> =
+        beats.all.windows(2).map(|pair| (pair[1].fiducial.0 - pair[0].fiducial.0) as f64).collect();
+    if rr.len() < 2 {
+        return 0.0;
+    }
+    shape::median(rr.windows(2).map(|pair| (pair[1] - pair[0]).abs() / pair[0]))
+}
+
+fn why_no_p(beats: &Beats, rr_change: f64) -> Reason {
+    let dominant: Vec<bool> = beats.of(Beats::DOMINANT).map(|beat| beat.paced).collect();
+    if dominant.iter().filter(|paced| **paced).count() * 2 >= dominant.len().max(1) {
+        return Reason::Paced;
+    }
+    if matches!(beats.rhythm, Rhythm::Irregular(_)) && rr_change > 0.08 {
+        return Reason::IrregularWithoutP;
+    }
+    Reason::NoPBeforeQrs
+}
+
+type Axes = (Measured<Degrees>, Measured<Degrees>, Measured<Degrees>);
+
+fn axes(dominant: Option<&Marked>) -> Axes {
+    let none = |reason: Reason| Measured::NotMeasurable(reason);
+    let Some(marked) = dominant else {
+        let reason = Reason::TooFewBeats { needed: 1, found: 0 };
+        return (none(reason.clone()), none(reason.clone()), none(reason));
+    };
+    let marks = global::beat(marked, None, Seconds::ZERO, true);
+    let of = |wave: &Wave, onset: Seconds| axis::of_wave(&marked.beat, onset, wave.offset);
+    let p = marks.p.as_ref().map_or_else(|| none(Reason::NoPBeforeQrs), |p| of(p, p.onset.unwrap_or(p.peak)));
+    let qrs = of(&marks.qrs, marks.qrs.onset.unwrap_or(marks.qrs.peak));
+    let t = marks
+        .t
+        .as_ref()
+        .map_or_else(|| none(Reason::TEndUnreliable), |t| of(t, t.peak - (t.offset - t.peak) * 1.5));
+    (p, qrs, t)
+}
