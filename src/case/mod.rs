@@ -2,10 +2,12 @@
 //!
 //! Left of a [`Case`] nothing knows paper; right of it nothing computes medicine.
 
+mod analyse;
 mod analysis;
 mod table;
 
-pub use analysis::{Analysis, Case, Settings, Sinus};
+pub use analyse::{AnalyseError, SHORTEST};
+pub use analysis::{Analysis, Case, Cut, Settings, Sinus, USUAL_HIGH_CUT, USUAL_LOW_CUT};
 pub use table::{Entry, Row, rp_interval, table};
 
 /// Stands on every sheet and in every output.

@@ -16,7 +16,7 @@ mod wfdb;
 
 pub use error::{At, Error, Fault};
 pub use export::{ExportError, Target, export};
-pub use table::{FormatInfo, formats};
+pub use table::{FormatInfo, formats, recordings_in};
 
 use crate::recording::Decoded;
 use std::path::Path;

@@ -3,6 +3,11 @@
 use super::files::Candidate;
 use super::{Error, Fault, csv, wfdb};
 use crate::recording::Decoded;
+use std::collections::BTreeMap;
+use std::ffi::OsString;
+use std::fs;
+use std::io;
+use std::path::{Path, PathBuf};
 
 /// How sure a format is that a file is its own, 0 (not mine) to 100 (nothing else looks like this).
 pub(super) type Score = u8;
@@ -14,6 +19,8 @@ pub(super) type Reader = fn(&Candidate) -> Result<Decoded, Error>;
 pub(super) struct Format {
     pub info: FormatInfo,
     pub score: fn(&Candidate) -> Score,
+    /// Whether the file stands for a recording of its own in a folder: a header does, its data don't.
+    pub stands_alone: fn(&Candidate) -> bool,
     pub read: Reader,
 }
 
@@ -31,6 +38,33 @@ const FORMATS: &[Format] = &[wfdb::FORMAT, csv::FORMAT];
 /// Every format that is read, in the order in which a file is offered to them.
 pub fn formats() -> impl Iterator<Item = FormatInfo> {
     FORMATS.iter().map(|format| format.info)
+}
+
+/// The recordings in a folder, sorted by name; one that stands there in several formats is listed once,
+/// in the first of the table.
+///
+/// # Errors
+/// When the folder can't be read.
+pub fn recordings_in(folder: &Path) -> io::Result<Vec<PathBuf>> {
+    let mut found: BTreeMap<OsString, (usize, PathBuf)> = BTreeMap::new();
+    for entry in fs::read_dir(folder)? {
+        let path = entry?.path();
+        if !path.is_file() {
+            continue;
+        }
+        let Ok(candidate) = Candidate::open(&path) else { continue };
+        let Some(format) = FORMATS.iter().position(|format| (format.stands_alone)(&candidate)) else {
+            continue;
+        };
+        let name = path.file_stem().unwrap_or_default().to_owned();
+        match found.get(&name) {
+            Some((known, _)) if *known <= format => {}
+            _ => {
+                found.insert(name, (format, path));
+            }
+        }
+    }
+    Ok(found.into_values().map(|(_, path)| path).collect())
 }
 
 /// The reader of the surest format.

@@ -103,7 +103,7 @@ fn lead_marks(lead: Lead, beats: &Beats, classes: &[Option<Marked>]) -> Option<V
         .map(|(index, marked)| {
             let beat = beats.all[index];
             let dominant = beat.class == Beats::DOMINANT;
-            lead_mark(marked, lead, Some(marked.place(index)?), beats.rate.time_of(beat.fiducial), dominant)
+            lead_mark(marked, lead, marked.place(index), beats.rate.time_of(beat.fiducial), dominant)
         })
         .collect()
 }

@@ -38,6 +38,7 @@ pub(super) const FORMAT: Format = Format {
         description: "table of text (CSV, TSV) with units in its header row, or with a sidecar (.toml)",
     },
     score,
+    stands_alone,
     read,
 };
 
@@ -55,6 +56,20 @@ fn score(candidate: &Candidate) -> Score {
         return 60;
     }
     if table::looks_like_one(&text) { 40 } else { 0 }
+}
+
+/// A table with a sidecar, or with its units in the heading; any other may be a list of something else.
+fn stands_alone(candidate: &Candidate) -> bool {
+    if candidate.head().contains(&0) {
+        return false;
+    }
+    let text = text_of(candidate.head());
+    let heading =
+        text.lines().find(|line| !line.trim().is_empty() && !line.starts_with('#')).unwrap_or_default();
+    let units = ["v]", "v)", "_mv", "_uv"].iter().any(|unit| heading.to_lowercase().contains(unit));
+    !sidecar::looks_like_one(&text)
+        && table::looks_like_one(&text)
+        && (units || candidate.path().with_extension("toml").is_file())
 }
 
 const UTF16_LOW_FIRST: [u8; 2] = [0xff, 0xfe];

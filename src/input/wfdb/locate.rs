@@ -16,6 +16,11 @@ pub(super) fn score(candidate: &Candidate) -> Score {
     }
 }
 
+/// Whether the file is a header itself.
+pub(super) fn is_header(candidate: &Candidate) -> bool {
+    own_score(candidate.head()) >= 50
+}
+
 /// The header: the file itself, or the `.hea` beside it.
 pub(super) fn header_of(candidate: &Candidate) -> PathBuf {
     if own_score(candidate.head()) > 0 {

@@ -30,6 +30,7 @@ pub(super) const FORMAT: Format = Format {
         description: "WFDB record: a text header (.hea) with signal files beside it (not FLAC, not multi-segment)",
     },
     score: locate::score,
+    stands_alone: locate::is_header,
     read,
 };
 
