@@ -4,4 +4,5 @@ mod architecture;
 mod batch;
 mod input;
 mod measure;
+mod sheet;
 mod support;

@@ -1,0 +1,3 @@
+//! The sheet: layouts and composition.
+
+mod layout;
