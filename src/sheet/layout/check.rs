@@ -10,7 +10,7 @@ use toml::de::{DeTable, DeValue};
 /// Smallest text, 6 pt.
 const SMALLEST_TEXT: f64 = 2.2;
 /// What the time ruler needs below the field.
-pub(in crate::sheet) const RULER: f64 = 4.5;
+const RULER: f64 = 4.5;
 /// Where the upright check bar stands, to the right of the field.
 pub(in crate::sheet) const BAR_GAP: f64 = 2.5;
 /// The check bars.
@@ -19,8 +19,6 @@ pub(in crate::sheet) const BAR: f64 = 100.0;
 const EDGE: f64 = 4.0;
 /// Each lead gets a quarter of the row at least: 2.5 s at 25 mm/s.
 const MOST_LEADS_A_ROW: usize = 4;
-/// Rows of the field, rhythm rows included.
-pub(in crate::sheet) const MOST_ROWS: usize = 15;
 
 /// Reads a layout.
 pub(super) fn layout(name: &str, text: &str) -> Result<Layout, Vec<Violation>> {
@@ -73,8 +71,9 @@ fn strips(mut table: Reader, report: &mut Report) -> Strips {
         seen.push(shown.lead);
     }
     let count = rows.len() + rhythm.len();
-    if count == 0 || count > MOST_ROWS {
-        report.add(&table.place(), format!("1 to {MOST_ROWS} rows are drawn, found {count}"));
+    let most = Layout::MOST_ROWS;
+    if count == 0 || count > most {
+        report.add(&table.place(), format!("1 to {most} rows are drawn, found {count}"));
     }
     let strips = Strips {
         rows,

@@ -3,6 +3,8 @@
 mod check;
 mod reader;
 
+pub(super) use check::{BAR, BAR_GAP};
+
 use super::Ink;
 use super::Paper;
 use crate::recording::Lead;
@@ -144,6 +146,9 @@ impl Area {
 }
 
 impl Layout {
+    /// Rows that a field holds at most, rhythm rows included.
+    pub const MOST_ROWS: usize = 15;
+
     /// A carried layout by its name, or one from a TOML file.
     ///
     /// # Errors
