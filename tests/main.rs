@@ -2,6 +2,7 @@
 
 mod architecture;
 mod batch;
+mod demo;
 mod input;
 mod measure;
 mod sheet;

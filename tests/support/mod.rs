@@ -1,6 +1,7 @@
 //! What the tests share: temporary folders, the annotated recordings, the program itself.
 
 pub mod annotations;
+pub mod dipole;
 pub mod golden;
 pub mod npz;
 
