@@ -45,6 +45,12 @@ pub(super) fn paragraph(shapes: Vec<Shape>) -> Element {
     Element { role: Role::Paragraph, shapes }
 }
 
+/// Text that every face can draw: the faces lack U+2212, so an en dash stands for the minus; a character
+/// without a glyph becomes a visible sign.
+fn drawable(text: &str) -> String {
+    lettering::printable(&text.replace('−', "–")).0
+}
+
 /// How a text looks.
 #[derive(Clone, Copy, Debug)]
 pub(super) struct Style {
@@ -80,7 +86,7 @@ impl Style {
             size: mm(self.size),
             face: self.face,
             ink: self.ink,
-            text: lettering::printable(text).0,
+            text: drawable(text),
         })
     }
 
@@ -97,16 +103,16 @@ impl Style {
     }
 
     pub fn width(&self, text: &str) -> Result<f64, ComposeError> {
-        Ok(lettering::width(self.face, mm(self.size), &lettering::printable(text).0)?.get())
+        Ok(lettering::width(self.face, mm(self.size), &drawable(text))?.get())
     }
 
     /// As much of the text as fits, with an ellipsis where it was cut.
     pub fn fit(&self, text: &str, room: f64) -> Result<String, ComposeError> {
-        Ok(lettering::fit(self.face, mm(self.size), &lettering::printable(text).0, mm(room))?)
+        Ok(lettering::fit(self.face, mm(self.size), &drawable(text), mm(room))?)
     }
 
     /// The text in lines no wider than `room`.
     pub fn wrap(&self, text: &str, room: f64) -> Result<Vec<String>, ComposeError> {
-        Ok(lettering::wrap(self.face, mm(self.size), &lettering::printable(text).0, mm(room))?)
+        Ok(lettering::wrap(self.face, mm(self.size), &drawable(text), mm(room))?)
     }
 }

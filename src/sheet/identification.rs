@@ -1,8 +1,8 @@
 //! The head of a page: who, when, where, how; and its foot: the caution and the page number.
 
 use super::draw::{Style, artifact, paragraph, pen, polyline};
+use super::given::{Sheet, plain};
 use super::layout::Area;
-use super::sheet::{Sheet, plain};
 use super::{ComposeError, Element, Role, Shape};
 use crate::case::CAUTION;
 use crate::recording::{Age, StartTime};
@@ -142,10 +142,6 @@ pub(super) fn alert_texts(sheet: &Sheet) -> Vec<String> {
             "High cut {} Hz: J point, ST and small deflections are changed",
             plain(corner.get())
         ));
-    }
-    if let Some(age) = sheet.case.recording.subject.age.filter(|age| age.years < ADULT) {
-        let unit = if age.years < 2.0 { "" } else { " years" };
-        texts.push(format!("Age {}{unit}: limits from adults don't apply", self::age(age)));
     }
     texts
 }

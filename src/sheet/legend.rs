@@ -1,8 +1,8 @@
 //! Below the grid field: time ruler, legend, check bars.
 
 use super::draw::{artifact, paragraph, pen, polyline};
+use super::given::{Sheet, plain};
 use super::layout::{BAR, BAR_GAP, Line};
-use super::sheet::{Sheet, plain};
 use super::{ComposeError, Element, Shape};
 use crate::condition::FilterChain;
 use crate::recording::SourceFilters;
@@ -65,7 +65,7 @@ fn bars(sheet: &Sheet) -> (Vec<Shape>, Shape) {
     ];
     let style = sheet.label();
     let caption = "Both bars are 100 mm long: if yours are not, the sheet was printed scaled.";
-    (shapes, style.right(right, y + 4.2, caption))
+    (shapes, style.right(right, y + 3.9, caption))
 }
 
 /// Scale, filters, source.
@@ -77,8 +77,12 @@ fn legend(sheet: &Sheet) -> Result<Vec<Shape>, ComposeError> {
     let scale =
         format!("{} mm/s   {} mm/mV", plain(sheet.options.speed.get()), plain(sheet.options.gain.get()));
     let after = strong.width(&scale)? + 3.0;
-    let chain =
-        format!("{}; {}", chain(&sheet.case.display.chain), source_filters(&recording.occasion.filters));
+    let chain = format!(
+        "Traces {}; measured {}; {}",
+        chain(&sheet.case.display.chain),
+        chain(&sheet.case.analysis.chain),
+        source_filters(&recording.occasion.filters)
+    );
     let hash: String = recording.source.sha256.chars().take(HASH_DIGITS).collect();
     let source = format!(
         "{} samples/s   {}   SHA-256 {hash}   leadsheet {}",
@@ -86,7 +90,7 @@ fn legend(sheet: &Sheet) -> Result<Vec<Shape>, ComposeError> {
         recording.source.file,
         env!("CARGO_PKG_VERSION")
     );
-    let (first, second) = (area.top + 2.4, area.top + 6.0);
+    let (first, second) = (area.top + 2.2, area.top + 5.7);
     Ok(vec![
         strong.left(area.left, first, &scale),
         body.left(area.left + after, first, &body.fit(&chain, room - after)?),
@@ -94,18 +98,15 @@ fn legend(sheet: &Sheet) -> Result<Vec<Shape>, ComposeError> {
     ])
 }
 
-/// The display chain in words.
-pub(super) fn chain(chain: &FilterChain) -> String {
-    let corner = |corner: Option<Hertz>| corner.map_or("off".to_owned(), |corner| plain(corner.get()));
+/// A chain in words.
+fn chain(chain: &FilterChain) -> String {
     let band = match (chain.low_cut, chain.high_cut) {
-        (None, None) => "no filter".to_owned(),
+        (None, None) => "unfiltered".to_owned(),
         (Some(low), Some(high)) => format!("{} to {} Hz", plain(low.get()), plain(high.get())),
-        (low, high) => format!("low cut {}, high cut {} Hz", corner(low), corner(high)),
+        (Some(low), None) => format!("from {} Hz", plain(low.get())),
+        (None, Some(high)) => format!("up to {} Hz", plain(high.get())),
     };
-    match chain.mains {
-        Some(mains) => format!("{band}, mains {} Hz rejected", plain(mains.get())),
-        None => format!("{band}, mains filter off"),
-    }
+    chain.mains.map_or(band.clone(), |mains| format!("{band}, {} Hz mains rejected", plain(mains.get())))
 }
 
 /// What the source says of its own filters.
@@ -120,7 +121,7 @@ fn source_filters(filters: &SourceFilters) -> String {
     say("high cut", filters.high_cut);
     say("mains", filters.mains);
     if said.is_empty() {
-        "source's own filters not stated".to_owned()
+        "source's filters not stated".to_owned()
     } else {
         format!("source: {}", said.join(", "))
     }

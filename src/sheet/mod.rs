@@ -4,6 +4,7 @@
 //! One scale per strip feeds grid, trace, calibration pulse and legend.
 
 mod draw;
+mod given;
 mod identification;
 mod layout;
 mod legend;
@@ -11,7 +12,6 @@ mod occupied;
 mod options;
 mod page;
 mod panels;
-mod sheet;
 mod strips;
 mod thin;
 mod timing;
@@ -22,7 +22,7 @@ pub use options::{ComposeError, SheetOptions};
 pub use page::{Anchor, Element, Grid, Ink, Page, Paper, Pen, Point, Rect, Role, Shape, Text};
 
 use crate::case::Case;
-use sheet::Sheet;
+use given::Sheet;
 
 /// Composes the sheet of a case: one page or more, finished.
 ///

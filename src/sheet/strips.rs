@@ -1,20 +1,19 @@
 //! The grid field: grid, calibration pulses, traces, separators, lead names.
 
 use super::draw::{artifact, paragraph, pen, polyline, rect};
+use super::given::{Sheet, plain};
 use super::layout::Area;
 use super::occupied::Occupied;
-use super::sheet::{Sheet, plain};
 use super::thin;
-use super::trace::{Content, Row, Segment};
+use super::trace::{Content, PULSE_MILLIVOLTS, Row, Segment};
 use super::{ComposeError, Element, Grid, Role, Shape};
 
-/// Duration and height of the calibration pulse (1 mV square of 200 ms).
+/// Duration of the calibration pulse (a square of 1 mV and 200 ms).
 const PULSE_SECONDS: f64 = 0.2;
-const PULSE_MILLIVOLTS: f64 = 1.0;
 /// Flat line before and after the pulse.
 const PULSE_FOOT: f64 = 1.5;
-/// Length of a separator, from the row's edge.
-const SEPARATOR: f64 = 2.5;
+/// A separator's strokes, from and to this far from the zero line.
+const SEPARATOR: (f64, f64) = (4.0, 7.0);
 /// Least distance between a text and a line.
 const CLEAR: f64 = 0.4;
 
@@ -28,8 +27,12 @@ pub(super) fn elements(sheet: &Sheet, rows: &[Row]) -> Result<Vec<Element>, Comp
         fine: pen(lines.fine_ruling),
         coarse: pen(lines.coarse_ruling),
     })])];
-    let mut marks: Vec<Shape> = rows.iter().flat_map(|row| separators(sheet, row)).collect();
+    let mut marks = Vec::new();
     for row in rows {
+        for stroke in separators(row) {
+            occupied.line(&stroke, lines.separator.width / 2.0);
+            marks.push(polyline(&stroke, pen(lines.separator)));
+        }
         let pulse = pulse(sheet, row);
         occupied.line(&pulse, lines.pulse.width / 2.0);
         marks.push(polyline(&pulse, pen(lines.pulse)));
@@ -42,6 +45,7 @@ pub(super) fn elements(sheet: &Sheet, rows: &[Row]) -> Result<Vec<Element>, Comp
     for row in rows {
         for segment in &row.segments {
             names.extend(label(sheet, row, segment, &mut occupied)?);
+            names.extend(breaks(sheet, row, segment, &mut occupied)?);
         }
         if row.gain != sheet.options.gain.get() {
             names.push(own_gain(sheet, row));
@@ -66,18 +70,13 @@ fn pulse(sheet: &Sheet, row: &Row) -> Vec<(f64, f64)> {
     ]
 }
 
-/// Short strokes at the row's edges between one lead and the next, away from the traces' middle.
-fn separators(sheet: &Sheet, row: &Row) -> Vec<Shape> {
-    let pen = pen(sheet.layout.lines.separator);
+/// Short strokes above and below the zero line between one lead and the next.
+fn separators(row: &Row) -> impl Iterator<Item = [(f64, f64); 2]> {
     let between = row.segments.iter().skip(1).map(|segment| segment.left);
-    between
-        .flat_map(|x| {
-            [
-                polyline(&[(x, row.top), (x, row.top + SEPARATOR)], pen),
-                polyline(&[(x, row.bottom - SEPARATOR), (x, row.bottom)], pen),
-            ]
-        })
-        .collect()
+    let (near, far) = SEPARATOR;
+    between.flat_map(move |x| {
+        [[(x, row.base - far), (x, row.base - near)], [(x, row.base + near), (x, row.base + far)]]
+    })
 }
 
 /// A lead's trace, its vertices at sample times.
@@ -139,6 +138,34 @@ fn label(
     let mut shapes = vec![name_style.left(x, y, &name)];
     if !said.is_empty() {
         shapes.push(beside.left(x + name_width + gap, y, &said));
+    }
+    Ok(shapes)
+}
+
+/// Says in a break what broke the trace, where there is room.
+fn breaks(
+    sheet: &Sheet,
+    row: &Row,
+    segment: &Segment,
+    occupied: &mut Occupied,
+) -> Result<Vec<Shape>, ComposeError> {
+    let Content::Trace { breaks, .. } = &segment.content else { return Ok(Vec::new()) };
+    let style = sheet.label();
+    let mut shapes = Vec::new();
+    for gap in breaks {
+        let text = if gap.saturated { "at limit" } else { "no signal" };
+        let width = style.width(text)?;
+        let middle = (gap.left + gap.right) / 2.0;
+        let area = Area {
+            left: middle - width / 2.0 - CLEAR,
+            top: row.base - style.cap() - CLEAR,
+            width: width + 2.0 * CLEAR,
+            height: style.cap() + 0.6 + 2.0 * CLEAR,
+        };
+        if gap.right - gap.left > area.width && occupied.taken(area) == 0 {
+            occupied.area(area);
+            shapes.push(style.middle(middle, row.base, text));
+        }
     }
     Ok(shapes)
 }

@@ -1,7 +1,7 @@
 //! Traces of one page: every row with its gain, every lead with its vertices at sample times.
 
+use super::given::Sheet;
 use super::layout::{Area, Shown};
-use super::sheet::Sheet;
 use super::timing::Stay;
 use crate::case::Case;
 use crate::recording::{Channel, Samples};
@@ -9,6 +9,12 @@ use crate::units::{Span, Spans};
 
 /// Without a low cut, a lead whose middle lies farther from 0 than this, in mV, is moved, and says so.
 const FAR_FROM_ZERO: f64 = 1.0;
+/// Height of the calibration pulse.
+pub(super) const PULSE_MILLIVOLTS: f64 = 1.0;
+/// A trace stays so far inside the field, half of its line included.
+const MARGIN: f64 = 0.2;
+/// The part of the rows' distance that is given up before a gain is halved (own choice).
+const SQUEEZE: f64 = 0.25;
 /// Rounding of products of times, in samples.
 const ROUNDING: f64 = 1e-6;
 
@@ -22,6 +28,20 @@ pub(super) struct Row {
     /// In mm/mV.
     pub gain: f64,
     pub segments: Vec<Segment>,
+}
+
+impl Row {
+    /// The lowest and the highest potential, in mV, the calibration pulse included.
+    fn reach(&self) -> (f64, f64) {
+        let traces = self.segments.iter().filter_map(|segment| match &segment.content {
+            Content::Trace { pieces, .. } => Some(pieces),
+            Content::Nothing(_) => None,
+        });
+        traces
+            .flatten()
+            .flatten()
+            .fold((0.0, 0.0), |(low, high): (f64, f64), &(_, value)| (low.min(value), high.max(value)))
+    }
 }
 
 /// One lead on a row.
@@ -58,31 +78,54 @@ pub(super) struct Break {
 
 /// The rows of a page, `page` counting from 0.
 pub(super) fn rows(sheet: &Sheet, page: usize) -> Vec<Row> {
-    let (timing, field, traces_left) = (&sheet.timing, sheet.geometry.field, sheet.traces_left());
+    let (timing, field) = (&sheet.timing, sheet.geometry.field);
     let speed = sheet.options.speed.get();
     let page_from = page as f64 * timing.row;
-    let count = timing.rows.len().max(1);
+    let left = sheet.traces_left() - page_from * speed;
+    let mut rows: Vec<Row> = timing
+        .rows
+        .iter()
+        .map(|stays| {
+            let parts = stays.iter().filter_map(|stay| cut(stay, page_from, timing.row));
+            let segments = parts.map(|stay| segment(sheet.case, &stay, left, speed)).collect();
+            Row { base: 0.0, top: 0.0, bottom: 0.0, gain: sheet.options.gain.get(), segments }
+        })
+        .collect();
+    arrange(&mut rows, field);
+    rows
+}
+
+/// Spreads the rows evenly over the field; the first moves down and the last up, by whole mm, where that
+/// keeps their traces inside at full gain. A row that still leaves the field gets half of its gain.
+fn arrange(rows: &mut [Row], field: Area) {
+    let count = rows.len().max(1);
     let height = (field.height / count as f64).floor();
     let above = ((field.height - height * count as f64) / 2.0).floor();
-    let mut rows = Vec::new();
-    for (index, stays) in timing.rows.iter().enumerate() {
-        let top = field.top + above + height * index as f64;
-        let segments = stays
-            .iter()
-            .filter_map(|stay| cut(stay, page_from, timing.row))
-            .map(|stay| segment(sheet.case, &stay, traces_left - page_from * speed, speed))
-            .collect();
-        let mut row = Row {
-            base: top + (height / 2.0).round(),
-            top,
-            bottom: top + height,
-            gain: sheet.options.gain.get(),
-            segments,
-        };
-        halve_until_inside(&mut row, field);
-        rows.push(row);
+    let (mut first, mut last) = (above + (height / 2.0).round(), 0.0);
+    last += first + height * (count - 1) as f64;
+    let mut spare = (SQUEEZE * height * (count - 1) as f64).floor();
+    if let [top, .., bottom] = &*rows {
+        let down = (top.reach().1 * top.gain + MARGIN - first).ceil().max(0.0);
+        if down <= spare {
+            first += down;
+            spare -= down;
+        }
+        let up = (MARGIN - bottom.reach().0 * bottom.gain - (field.height - last)).ceil().max(0.0);
+        if up <= spare {
+            last -= up;
+        }
     }
-    rows
+    let pitch = (last - first) / (count - 1).max(1) as f64;
+    for (index, row) in rows.iter_mut().enumerate() {
+        row.base = field.top + (first + pitch * index as f64).round();
+        row.top = (row.base - height / 2.0).max(field.top);
+        row.bottom = (row.base + height / 2.0).min(field.bottom());
+        let (low, high) = row.reach();
+        let (above, below) = (row.base - field.top - MARGIN, field.bottom() - row.base - MARGIN);
+        while row.gain > f64::MIN_POSITIVE && (high * row.gain > above || -low * row.gain > below) {
+            row.gain /= 2.0;
+        }
+    }
 }
 
 /// What of a stay falls on the page that starts at `from`.
@@ -90,12 +133,9 @@ fn cut(stay: &Stay, from: f64, length: f64) -> Option<Stay> {
     let left = stay.sheet_from.max(from);
     let right = (stay.sheet_from + stay.length).min(from + length);
     let moved = left - stay.sheet_from;
-    (right - left > 1e-6).then(|| Stay {
-        sheet_from: left,
-        source_from: stay.source_from + moved,
-        length: right - left,
-        ..*stay
-    })
+    let part =
+        Stay { sheet_from: left, source_from: stay.source_from + moved, length: right - left, ..*stay };
+    (part.length > ROUNDING).then_some(part)
 }
 
 fn segment(case: &Case, stay: &Stay, sheet_left: f64, speed: f64) -> Segment {
@@ -175,22 +215,4 @@ fn offset(samples: &Samples, valid: &[Span]) -> f64 {
     let middle = values.len() / 2;
     let median = *values.select_nth_unstable_by(middle, f64::total_cmp).1;
     if median.abs() > FAR_FROM_ZERO { (median * 10.0).round() / 10.0 } else { 0.0 }
-}
-
-/// Halves a row's gain until every trace of it lies inside the field.
-fn halve_until_inside(row: &mut Row, field: Area) {
-    let (mut low, mut high) = (0.0f64, 0.0f64);
-    for segment in &row.segments {
-        if let Content::Trace { pieces, .. } = &segment.content {
-            for &(_, value) in pieces.iter().flatten() {
-                low = low.min(value);
-                high = high.max(value);
-            }
-        }
-    }
-    // Half a line's width stays inside too.
-    let (above, below) = (row.base - field.top - 0.2, field.bottom() - row.base - 0.2);
-    while row.gain > f64::MIN_POSITIVE && (high * row.gain > above || -low * row.gain > below) {
-        row.gain /= 2.0;
-    }
 }

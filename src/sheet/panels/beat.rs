@@ -1,8 +1,8 @@
 //! A representative beat, magnified, with the marks that were made on it.
 
 use super::super::draw::{artifact, dashed, paragraph, pen, polyline};
+use super::super::given::{Sheet, plain};
 use super::super::layout::{Area, Line};
-use super::super::sheet::{Sheet, plain};
 use super::super::{ComposeError, Element, Role, Shape};
 use crate::average::RepresentativeBeat;
 use crate::recording::Lead;
@@ -78,7 +78,10 @@ pub(super) fn elements(sheet: &Sheet, area: Area, view: &View) -> Result<Vec<Ele
     let thin = dashed(Line { width: 0.1, ..mark }, 0.5, 0.5);
     let mut texts = Vec::new();
     let mut foot = plot.bottom();
-    for bracket in &view.brackets {
+    // The one that reaches farthest comes first, so that no name is crossed by another's end line.
+    let mut brackets: Vec<&Bracket> = view.brackets.iter().collect();
+    brackets.sort_by(|a, b| b.to.total_cmp(&a.to));
+    for bracket in brackets {
         let (left, right) = (x(bracket.from), x(bracket.to).min(plot.right()));
         let line = foot + 1.3;
         marks.push(polyline(&[(left, plot.top), (left, line)], thin));
@@ -90,16 +93,16 @@ pub(super) fn elements(sheet: &Sheet, area: Area, view: &View) -> Result<Vec<Ele
         texts.push(label.inked(mark.ink).left(text_left, line + label.cap() / 2.0, &bracket.text));
         foot += BRACKET;
     }
-    let scale = format!(
-        "{} mm/s, {} mm/mV{}",
-        plain(speed),
-        plain(gain),
-        if cut { ", QRS leaves the box" } else { "" }
-    );
+    let beside = area.left + name.width(view.lead.name())? + 1.2;
+    let mut scale = format!("{} mm/s, {} mm/mV", plain(speed), plain(gain));
+    let alt = format!("Representative beat in lead {}, {scale}", view.lead);
+    if cut {
+        let longer = format!("{scale}, QRS cut");
+        let fits = label.width(&longer)? <= area.right() - beside;
+        scale = if fits { longer } else { format!("{scale}, cut") };
+    }
     let trace = Line { width: lines.trace.width * 0.9, ..lines.trace };
     let shapes: Vec<Shape> = pieces.iter().map(|piece| polyline(piece, pen(trace))).collect();
-    let alt = format!("Representative beat in lead {}, {scale}", view.lead);
-    let beside = area.left + name.width(view.lead.name())? + 1.2;
     Ok(vec![
         artifact(marks),
         Element { role: Role::Figure { alt }, shapes },

@@ -1,8 +1,8 @@
 //! Suspected findings, each with the beat that shows it and boxes for a reader; or why there is none.
 
 use super::super::draw::{artifact, frame, paragraph, pen};
+use super::super::given::{Sheet, listed};
 use super::super::layout::Area;
-use super::super::sheet::{Sheet, listed};
 use super::super::{ComposeError, Element, Role};
 use super::HEADING;
 use super::beat::{self, Bracket, View};
@@ -11,14 +11,16 @@ use crate::findings::{Search, SearchDone, Suspected};
 use crate::measure::Wave;
 use crate::recording::Lead;
 
-/// Findings on the panel; more go to a page of their own.
-const MOST: usize = 3;
 /// Between two findings.
-const GUTTER: f64 = 4.0;
+const GUTTER: f64 = 3.0;
 /// Height of a finding's cell on a page of its own.
-const CELL: f64 = 52.0;
+const CELL: f64 = 46.0;
+/// Its least width: the choices of a reader side by side.
+const NARROWEST: f64 = 33.0;
+/// What is shown after a QRS, in s.
+const AFTER_QRS: f64 = 0.14;
 /// Side of a box to tick.
-const BOX: f64 = 2.0;
+const BOX: f64 = 1.9;
 /// What a reader may do with a finding.
 const CHOICES: [&str; 3] = ["confirm", "reject", "leave open"];
 
@@ -34,53 +36,54 @@ pub(super) fn elements<'a>(
     if done.suspected.is_empty() {
         return Ok((none(sheet, area)?, Vec::new()));
     }
-    let (heading, rule) = super::heading(sheet, area, "Suspected, for a reader to confirm");
-    let mut elements = vec![Element { role: Role::Heading, shapes: heading }, rule];
-    let below = Area { top: area.top + HEADING, height: area.height - HEADING, ..area };
-    let per_row = MOST.min(done.suspected.len());
-    let rows = ((below.height / CELL).floor() as usize).max(1);
-    let (here, rest) = done.suspected.split_at((MOST * rows).min(done.suspected.len()));
-    let height = if rows > 1 { CELL } else { below.height };
-    elements.extend(cells(sheet, Area { height, ..below }, &here.iter().collect::<Vec<_>>(), per_row)?);
-    Ok((elements, rest.iter().collect()))
+    let all: Vec<&Suspected> = done.suspected.iter().collect();
+    let (elements, shown) = cells(sheet, area, "Suspected, for a reader to confirm", &all)?;
+    Ok((elements, all[shown..].to_vec()))
 }
 
-/// The findings that didn't fit, on a page of their own.
+/// Findings that the panel had no room for, and how many were shown.
 pub(super) fn continued(
     sheet: &Sheet,
     area: Area,
     findings: &[&Suspected],
-) -> Result<Vec<Element>, ComposeError> {
+) -> Result<(Vec<Element>, usize), ComposeError> {
     if findings.is_empty() {
-        return Ok(Vec::new());
+        return Ok((Vec::new(), 0));
     }
-    let (heading, rule) = super::heading(sheet, area, "Suspected, continued");
-    let mut elements = vec![Element { role: Role::Heading, shapes: heading }, rule];
-    let below = Area { top: area.top + HEADING, height: CELL, ..area };
-    elements.extend(cells(sheet, below, findings, 4)?);
-    Ok(elements)
+    cells(sheet, area, "Suspected, continued", findings)
 }
 
-/// Cells in rows of `per_row`, each as high as `area`.
+/// A heading and as many cells as fit, and how many those are.
 fn cells(
     sheet: &Sheet,
     area: Area,
+    title: &str,
     findings: &[&Suspected],
-    per_row: usize,
-) -> Result<Vec<Element>, ComposeError> {
-    let width = (area.width - GUTTER * (per_row.max(1) - 1) as f64) / per_row.max(1) as f64;
-    let mut elements = Vec::new();
-    for (index, finding) in findings.iter().enumerate() {
+) -> Result<(Vec<Element>, usize), ComposeError> {
+    let (mut heading, rule) = super::heading(sheet, area, title);
+    if findings.iter().any(|finding| finding.needs_sinus_recording) {
+        let y = area.top + sheet.heading().cap() + 0.2;
+        heading.push(sheet.label().right(area.right(), y, "* sinus recording needed to call it"));
+    }
+    let mut elements = vec![Element { role: Role::Heading, shapes: heading }, rule];
+    let most = (((area.width + GUTTER) / (NARROWEST + GUTTER)).floor() as usize).max(1);
+    let per_row = most.min(findings.len().max(2));
+    let width = (area.width - GUTTER * (per_row - 1) as f64) / per_row as f64;
+    let below = area.height - HEADING;
+    let rows = ((below / CELL).floor() as usize).max(1);
+    let height = below.min(CELL);
+    let shown = findings.len().min(per_row * rows);
+    for (index, finding) in findings.iter().take(shown).enumerate() {
         let (row, column) = (index / per_row, index % per_row);
         let cell = Area {
             left: area.left + (width + GUTTER) * column as f64,
-            top: area.top + (area.height + 3.0) * row as f64,
+            top: area.top + HEADING + height * row as f64,
             width,
-            height: area.height,
+            height: if rows > 1 { height - 3.0 } else { height },
         };
         elements.extend(cell_of(sheet, cell, finding)?);
     }
-    Ok(elements)
+    Ok((elements, shown))
 }
 
 fn cell_of(sheet: &Sheet, area: Area, finding: &Suspected) -> Result<Vec<Element>, ComposeError> {
@@ -91,7 +94,7 @@ fn cell_of(sheet: &Sheet, area: Area, finding: &Suspected) -> Result<Vec<Element
     for text in numbers(finding) {
         lines.extend(body.wrap(&text, area.width)?);
     }
-    let boxes = BOX + 1.6;
+    let boxes = BOX + 2.0;
     let text_height = leading * lines.len() as f64 + 1.2;
     let plot = Area { height: area.height - text_height - boxes, ..area };
     let mut elements = beat_of(sheet, plot, finding)?;
@@ -103,24 +106,21 @@ fn cell_of(sheet: &Sheet, area: Area, finding: &Suspected) -> Result<Vec<Element
         y += leading;
     }
     elements.push(paragraph(texts));
-    elements.extend(choices(sheet, area, area.bottom() - BOX)?);
+    elements.extend(choices(sheet, area, area.bottom() - BOX - 0.6)?);
     Ok(elements)
 }
 
 /// The finding in numbers, one statement a line.
 fn numbers(finding: &Suspected) -> Vec<String> {
-    let rp = finding.rp.map_or("begins inside the QRS".to_owned(), |rp| format!("RP {:.0} ms", rp.ms()));
+    let rp = finding.rp.map_or("onset in QRS".to_owned(), |rp| format!("RP {:.0} ms", rp.ms()));
     let sign = if finding.amplitude.get() < 0.0 { "−" } else { "" };
     let amplitude = format!("{sign}{:.2} mV in {}", finding.amplitude.get().abs(), finding.clearest);
     let evidence = finding.evidence;
-    let mut lines = vec![
-        format!("{}: {rp}, {amplitude}", listed(&finding.leads)),
-        format!("{} of {} beats show it", evidence.showing, evidence.examined),
-    ];
-    if finding.needs_sinus_recording {
-        lines.push("sinus recording needed to call it".to_owned());
-    }
-    lines
+    let star = if finding.needs_sinus_recording { "*" } else { "" };
+    vec![
+        format!("{}{star}: {amplitude}", listed(&finding.leads)),
+        format!("{rp}; {} of {} beats", evidence.showing, evidence.examined),
+    ]
 }
 
 fn choices(sheet: &Sheet, area: Area, top: f64) -> Result<Vec<Element>, ComposeError> {
@@ -129,14 +129,14 @@ fn choices(sheet: &Sheet, area: Area, top: f64) -> Result<Vec<Element>, ComposeE
     let (mut boxes, mut texts) = (Vec::new(), Vec::new());
     let mut all = 0.0;
     for choice in CHOICES {
-        all += BOX + 0.8 + label.width(choice)?;
+        all += BOX + 0.6 + label.width(choice)?;
     }
-    let gap = ((area.width - all) / 2.0).clamp(0.8, 3.0);
+    let gap = ((area.width - all) / 2.0).clamp(0.6, 3.0);
     for choice in CHOICES {
         let square = Area { left, top, width: BOX, height: BOX };
         boxes.push(frame(square, pen(sheet.layout.lines.bar)));
-        texts.push(label.left(left + BOX + 0.8, top + BOX - 0.25, choice));
-        left += BOX + 0.8 + label.width(choice)? + gap;
+        texts.push(label.left(left + BOX + 0.6, top + BOX - 0.25, choice));
+        left += BOX + 0.6 + label.width(choice)? + gap;
     }
     Ok(vec![artifact(boxes), paragraph(texts)])
 }
@@ -163,7 +163,7 @@ fn beat_of(sheet: &Sheet, area: Area, finding: &Suspected) -> Result<Vec<Element
         lead: finding.clearest,
         from: onset - 0.06,
         to: (to + 0.06).max(offset + 0.1),
-        focus: (from - 0.02, to + 0.06),
+        focus: (from, to + 0.04),
         brackets,
     };
     beat::elements(sheet, area, &view)
@@ -218,8 +218,10 @@ fn plain_beat(
     }
     let ms = measurements.qrs.value().map_or(String::new(), |qrs| format!(" {:.0} ms", qrs.ms()));
     brackets.push(Bracket { from: onset, to: offset, text: format!("QRS{ms}") });
-    let mut to = offset + 0.2;
-    if let (Some(t), Some(qt)) = (&marks.t, measurements.qt.value()) {
+    // A search looks at the end of the QRS and at ST; without one the whole beat is of interest.
+    let searched = matches!(sheet.case.analysis.findings.retrograde_p, Search::Done(_));
+    let mut to = offset + AFTER_QRS;
+    if let (Some(t), Some(qt), false) = (&marks.t, measurements.qt.value(), searched) {
         to = t.offset.get() + 0.04;
         brackets.push(Bracket { from: onset, to: t.offset.get(), text: format!("QT {:.0} ms", qt.ms()) });
     }

@@ -1,17 +1,17 @@
 //! The measurement table, and what the measurements rest on.
 
 use super::super::draw::paragraph;
+use super::super::given::Sheet;
 use super::super::layout::Area;
-use super::super::sheet::Sheet;
 use super::super::{ComposeError, Element, Role, Shape};
 use super::HEADING;
 use crate::beats::{Beats, Rhythm, RrRange};
 use crate::case::{self, Entry};
 
 /// Right edge of the values, left edges of units and spreads, left edge of reasons: parts of the width.
-const VALUE: f64 = 0.42;
-const UNIT: f64 = 0.44;
-const SPREAD: f64 = 0.56;
+const VALUE: f64 = 0.38;
+const UNIT: f64 = 0.40;
+const SPREAD: f64 = 0.52;
 /// Largest distance between rows.
 const WIDEST_ROW: f64 = 3.6;
 
@@ -25,7 +25,7 @@ pub(super) fn elements(sheet: &Sheet, area: Area) -> Result<Vec<Element>, Compos
     let basis = basis(sheet, area)?;
     let rows = case::table(sheet.case);
     let leading = body.size * 1.22;
-    let below = leading * basis.len() as f64 + 0.8;
+    let below = leading * basis.len() as f64;
     let pitch = ((area.height - HEADING - below) / rows.len().max(1) as f64).min(WIDEST_ROW);
     let mut elements = vec![Element { role: Role::Heading, shapes: heading }, rule];
     let mut y = area.top + HEADING + body.cap() - 0.4;
@@ -74,15 +74,15 @@ fn basis(sheet: &Sheet, area: Area) -> Result<Vec<String>, ComposeError> {
     };
     let label = sheet.label();
     let beats = format!("{used} of {found} beats averaged{other}; {rhythm}");
-    let noises: Vec<String> = analysis
-        .measurements
-        .noise
-        .iter()
-        .filter_map(|(lead, noise)| Some(format!("{lead} {:.0}", (*noise)?.get() * 1000.0)))
-        .collect();
+    let noise = |limb: bool| -> Vec<String> {
+        let leads = analysis.measurements.noise.iter().filter(|(lead, _)| lead.is_limb() == limb);
+        leads.filter_map(|(lead, noise)| Some(format!("{lead} {:.0}", (*noise)?.get() * 1000.0))).collect()
+    };
     let mut lines = label.wrap(&beats, area.width)?;
-    if !noises.is_empty() {
-        lines.extend(label.wrap(&format!("Noise, µV RMS: {}", noises.join(", ")), area.width)?);
+    for (what, noises) in [("Noise, µV", noise(true)), ("Noise, µV", noise(false))] {
+        if !noises.is_empty() {
+            lines.push(label.fit(&format!("{what}: {}", noises.join(" · ")), area.width)?);
+        }
     }
     Ok(lines)
 }

@@ -7,14 +7,15 @@ mod measurements;
 pub(super) mod notes;
 
 use super::draw::{artifact, pen, polyline};
+use super::given::Sheet;
 use super::layout::Area;
-use super::sheet::Sheet;
 use super::{ComposeError, Element, Shape};
 
 /// From the panel's top to the first line below its heading.
 const HEADING: f64 = 4.6;
 
-/// Adds the panels to the first page or to a page of their own, and a page for what doesn't fit.
+/// Adds the panels to the first page or to a page of their own; what doesn't fit goes below the strips of
+/// the next page, or to pages of its own.
 pub(super) fn add(
     sheet: &Sheet,
     halved: &[String],
@@ -22,27 +23,37 @@ pub(super) fn add(
 ) -> Result<(), ComposeError> {
     let geometry = sheet.geometry;
     let mut elements = measurements::elements(sheet, geometry.measurements)?;
-    let (shown, findings_left) = findings::elements(sheet, geometry.findings)?;
+    let (shown, mut findings) = findings::elements(sheet, geometry.findings)?;
     elements.extend(shown);
-    let (shown, notes_left) = notes::elements(sheet, geometry.notes, halved)?;
+    let (shown, mut notes) = notes::elements(sheet, geometry.notes, halved)?;
     elements.extend(shown);
+    let (left, right) = (geometry.measurements.left, geometry.notes.right());
+    let top = geometry.field.top + 2.0;
+    let whole = Area { left, top, width: right - left, height: geometry.caution.top - 2.0 - top };
+    let below = Area { top: geometry.notes.top, height: geometry.notes.height, ..whole };
+    let mut page = 1;
     if geometry.panels_on_own_page {
         pages.push(elements);
+        page = pages.len();
     } else if let Some(first) = pages.first_mut() {
         first.extend(elements);
     }
-    if findings_left.is_empty() && notes_left.is_empty() {
-        return Ok(());
+    while !findings.is_empty() || !notes.is_empty() {
+        let area = if page < pages.len() { below } else { whole };
+        if page == pages.len() {
+            pages.push(Vec::new());
+        }
+        let for_notes = geometry.notes.width;
+        let beside = Area { left: right - for_notes, width: for_notes, ..area };
+        let rest = Area { width: area.width - for_notes - 5.0, ..area };
+        let (mut elements, shown) = findings::continued(sheet, rest, &findings)?;
+        findings.drain(..shown);
+        let (lines, shown) = notes::continued(sheet, beside, &notes)?;
+        notes.drain(..shown);
+        elements.extend(lines);
+        pages[page].extend(elements);
+        page += 1;
     }
-    let top = geometry.field.top + 2.0;
-    let bottom = geometry.caution.top - 2.0;
-    let (left, right) = (geometry.identification.left, geometry.caution.right());
-    let for_notes = geometry.notes.width;
-    let whole = Area { left, top, width: right - left - for_notes - 4.0, height: bottom - top };
-    let mut elements = findings::continued(sheet, whole, &findings_left)?;
-    let beside = Area { left: right - for_notes, width: for_notes, ..whole };
-    elements.extend(notes::continued(sheet, beside, &notes_left)?);
-    pages.push(elements);
     Ok(())
 }
 

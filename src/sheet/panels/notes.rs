@@ -1,9 +1,9 @@
 //! Notes, most weighty first, and the lines for the reader.
 
 use super::super::draw::{artifact, paragraph, pen, polyline};
+use super::super::given::{Sheet, listed, plain};
 use super::super::identification::ADULT;
 use super::super::layout::Area;
-use super::super::sheet::{Sheet, listed, plain};
 use super::super::trace::Row;
 use super::super::{ComposeError, Element, Role};
 use super::HEADING;
@@ -39,25 +39,31 @@ pub(super) fn elements(
     let left = if lines.len() > fit { lines.split_off(fit.saturating_sub(1)) } else { Vec::new() };
     let mut shown = lines;
     if !left.is_empty() {
-        shown.push(("continued on the last page".to_owned(), false));
+        shown.push(("continued on the next page".to_owned(), false));
     }
     elements.push(set(sheet, area, area.top + HEADING, &shown));
     elements.extend(reader(sheet, area));
     Ok((elements, left))
 }
 
-/// The lines that didn't fit, on a page of their own.
-pub(super) fn continued(sheet: &Sheet, area: Area, lines: &[Printed]) -> Result<Vec<Element>, ComposeError> {
+/// Lines that the panel had no room for, and how many were set.
+pub(super) fn continued(
+    sheet: &Sheet,
+    area: Area,
+    lines: &[Printed],
+) -> Result<(Vec<Element>, usize), ComposeError> {
     if lines.is_empty() {
-        return Ok(Vec::new());
+        return Ok((Vec::new(), 0));
     }
     let (heading, rule) = super::heading(sheet, area, "Notes, continued");
-    let fit = ((area.height - HEADING) / leading(sheet)).floor() as usize;
-    Ok(vec![
+    let fit = (((area.height - HEADING) / leading(sheet)).floor() as usize).max(1);
+    let shown = lines.len().min(fit);
+    let elements = vec![
         Element { role: Role::Heading, shapes: heading },
         rule,
-        set(sheet, area, area.top + HEADING, &lines[..lines.len().min(fit)]),
-    ])
+        set(sheet, area, area.top + HEADING, &lines[..shown]),
+    ];
+    Ok((elements, shown))
 }
 
 fn leading(sheet: &Sheet) -> f64 {
@@ -112,9 +118,10 @@ fn all(sheet: &Sheet, halved: &[String]) -> Vec<Note> {
             sinus.recording.source.file
         )));
     }
-    notes.extend(
-        recording.occasion.remarks.iter().map(|remark| Note::information(format!("Source: {remark}"))),
-    );
+    if !recording.occasion.remarks.is_empty() {
+        let remarks = recording.occasion.remarks.join(" ");
+        notes.push(Note::information(format!("The source remarks: {remarks}")));
+    }
     notes.sort_by_key(|note| std::cmp::Reverse(note.weight));
     notes
 }
@@ -141,10 +148,9 @@ fn leads(sheet: &Sheet) -> Vec<Note> {
     }
     let mut reasons: Vec<&Absence> = Vec::new();
     for (_, channel) in leads.iter() {
-        if let Channel::Absent(why) = channel {
-            if !reasons.contains(&why) {
-                reasons.push(why);
-            }
+        match channel {
+            Channel::Absent(why) if !reasons.contains(&why) => reasons.push(why),
+            _ => {}
         }
     }
     for why in reasons {
@@ -174,7 +180,7 @@ pub(in super::super) fn own_gains(sheet: &Sheet, rows: &[Row]) -> Vec<String> {
         .filter(|row| row.gain != sheet.options.gain.get())
         .map(|row| {
             let leads: Vec<Lead> = row.segments.iter().map(|segment| segment.shown.lead).collect();
-            format!("row of {} at {} mm/mV: it would leave the grid", listed(&leads), plain(row.gain))
+            format!("row {} drawn at {} mm/mV to stay on the grid", listed(&leads), plain(row.gain))
         })
         .collect()
 }
