@@ -37,6 +37,7 @@ const ROOMS: &[(&str, &[&str])] = &[
             "measure",
             "findings",
             "case",
+            "report",
             "sheet",
             "pdf",
             "batch",

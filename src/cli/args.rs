@@ -64,7 +64,7 @@ pub struct PrintArgs {
 #[derive(Debug, Args)]
 pub struct LookArgs {
     /// A layout's name (see `leadsheet layouts`) or file
-    #[arg(long, value_name = "NAME|FILE.toml", default_value = "standard")]
+    #[arg(long, value_name = "NAME|FILE.toml", default_value = crate::sheet::DEFAULT_LAYOUT)]
     pub layout: String,
     /// Paper
     #[arg(long, value_enum, default_value = "a4")]

@@ -4,9 +4,12 @@
 //! was done, 1 when something could not be, 2 when the arguments don't make sense.
 
 mod args;
+mod demo;
 mod export;
 mod inputs;
+mod look;
 mod measure;
+mod print;
 mod terminal;
 
 use args::{Command, Typed};
@@ -35,12 +38,14 @@ pub fn run(arguments: impl IntoIterator<Item = OsString>) -> ExitCode {
         }
     };
     let outcome = match &typed.command {
-        Command::Print(_) | Command::Layouts | Command::Demo(_) => Err(Failure::Usage(String::new())),
+        Command::Print(args) => print::print(args),
         Command::Measure(args) => measure::measure(args),
         Command::Export(args) => export::export(args),
+        Command::Layouts => terminal::list(crate::sheet::layouts().map(|layout| (layout.name, layout.about))),
         Command::Formats => {
             terminal::list(crate::input::formats().map(|format| (format.name, format.description)))
         }
+        Command::Demo(args) => demo::demo(args),
     };
     match outcome {
         Ok(()) => ExitCode::SUCCESS,
