@@ -106,6 +106,13 @@ impl Style {
         Ok(lettering::width(self.face, mm(self.size), &drawable(text))?.get())
     }
 
+    /// The same, made smaller until the text fits, down to `smallest`.
+    pub fn shrunk(&self, text: &str, room: f64, smallest: f64) -> Result<Self, ComposeError> {
+        let width = self.width(text)?;
+        let size = if width > room { (self.size * room / width).max(smallest) } else { self.size };
+        Ok(Self { size, ..*self })
+    }
+
     /// As much of the text as fits, with an ellipsis where it was cut.
     pub fn fit(&self, text: &str, room: f64) -> Result<String, ComposeError> {
         Ok(lettering::fit(self.face, mm(self.size), &drawable(text), mm(room))?)

@@ -13,37 +13,71 @@ const LOW_HIGH_CUT: f64 = 40.0;
 pub(super) const ADULT: f64 = 18.0;
 
 /// One field: its label, what the source has, and the part of the row's width that it takes.
-struct Field {
-    label: &'static str,
-    value: Option<String>,
+pub(super) struct Field {
+    pub label: &'static str,
+    pub value: Option<String>,
     part: f64,
+}
+
+/// The upper and the lower row of fields.
+fn fields(sheet: &Sheet) -> [Vec<Field>; 2] {
+    let subject = &sheet.case.recording.subject;
+    let occasion = &sheet.case.recording.occasion;
+    let field = |label, value: Option<String>, part| Field { label, value, part };
+    [
+        vec![
+            field("Name", subject.name.clone(), 0.38),
+            field("Number", subject.id.clone(), 0.24),
+            field("Born", subject.birth_date.map(|date| date.to_string()), 0.15),
+            field("Sex", subject.sex.as_ref().map(ToString::to_string), 0.11),
+            field("Age", subject.age.map(age), 0.12),
+        ],
+        vec![
+            field("Recorded", occasion.start.map(start_time), 0.38),
+            field("Place", occasion.place.clone(), 0.24),
+            field("Operator", occasion.operator.clone(), 0.15),
+            field("Recorder", occasion.device.clone(), 0.23),
+        ],
+    ]
+}
+
+/// The area of the fields: without alerts it takes theirs too.
+fn area(sheet: &Sheet) -> Area {
+    let (own, alerts) = (sheet.geometry.identification, sheet.geometry.alerts);
+    if alert_texts(sheet).is_empty() && alerts.left > own.left {
+        Area { width: alerts.right() - own.left, ..own }
+    } else {
+        own
+    }
+}
+
+/// What a field has room for.
+fn room(area: Area, field: &Field) -> f64 {
+    area.width * field.part - 3.0
+}
+
+/// The fields whose value is longer than the head has room for.
+pub(super) fn cut_short(sheet: &Sheet) -> Result<Vec<Field>, ComposeError> {
+    let mut cut = Vec::new();
+    for field in fields(sheet).into_iter().flatten() {
+        let value = field.value.as_deref().unwrap_or_default();
+        if sheet.label().width(value)? > room(area(sheet), &field) {
+            cut.push(field);
+        }
+    }
+    Ok(cut)
 }
 
 /// Identification and alerts.
 pub(super) fn elements(sheet: &Sheet) -> Result<Vec<Element>, ComposeError> {
-    let area = sheet.geometry.identification;
-    let subject = &sheet.case.recording.subject;
-    let occasion = &sheet.case.recording.occasion;
-    let field = |label, value: Option<String>, part| Field { label, value, part };
-    let first = [
-        field("Name", subject.name.clone(), 0.40),
-        field("Number", subject.id.clone(), 0.22),
-        field("Born", subject.birth_date.map(|date| date.to_string()), 0.15),
-        field("Sex", subject.sex.as_ref().map(ToString::to_string), 0.11),
-        field("Age", subject.age.map(age), 0.12),
-    ];
-    let second = [
-        field("Recorded", occasion.start.map(start_time), 0.40),
-        field("Place", occasion.place.clone(), 0.22),
-        field("Operator", occasion.operator.clone(), 0.19),
-        field("Recorder", occasion.device.clone(), 0.19),
-    ];
+    let area = area(sheet);
+    let [first, second] = fields(sheet);
     let mut rules = Vec::new();
-    let name = fields(sheet, &first[..1], area, area.top, sheet.name(), &mut rules)?;
+    let name = row(sheet, &first[..1], area, sheet.name(), &mut rules)?;
     let rest = Area { left: area.left + area.width * first[0].part, ..area };
-    let mut others = fields(sheet, &first[1..], rest, area.top, sheet.value(), &mut rules)?;
-    let below = area.top + area.height / 2.0 + 0.6;
-    others.extend(fields(sheet, &second, area, below, sheet.value(), &mut rules)?);
+    let mut others = row(sheet, &first[1..], rest, sheet.value(), &mut rules)?;
+    let below = Area { top: area.top + area.height / 2.0 + 0.6, ..area };
+    others.extend(row(sheet, &second, below, sheet.value(), &mut rules)?);
     let mut elements =
         vec![Element { role: Role::Heading, shapes: name }, paragraph(others), artifact(rules)];
     let alerts = alerts(sheet)?;
@@ -54,29 +88,31 @@ pub(super) fn elements(sheet: &Sheet) -> Result<Vec<Element>, ComposeError> {
 }
 
 /// A row of fields; what the source doesn't have is a line to write on.
-fn fields(
+fn row(
     sheet: &Sheet,
     fields: &[Field],
     area: Area,
-    top: f64,
     style: Style,
     rules: &mut Vec<Shape>,
 ) -> Result<Vec<Shape>, ComposeError> {
     let label = sheet.label();
-    let (full, mut left) = (sheet.geometry.identification.width, area.left);
+    let (top, mut left) = (area.top, area.left);
     let baseline = top + label.cap() + 1.0 + sheet.value().cap() + 0.9;
     let mut shapes = Vec::new();
     for field in fields {
-        let room = full * field.part - 3.0;
+        let room = room(area, field);
         shapes.push(label.left(left, top + label.cap(), field.label));
         match &field.value {
-            Some(value) => shapes.push(style.left(left, baseline, &style.fit(value, room)?)),
+            Some(value) => {
+                let style = style.shrunk(value, room, label.size)?;
+                shapes.push(style.left(left, baseline, &style.fit(value, room)?));
+            }
             None => rules.push(polyline(
                 &[(left, baseline + 0.4), (left + room, baseline + 0.4)],
                 pen(sheet.layout.lines.rule),
             )),
         }
-        left += full * field.part;
+        left += area.width * field.part;
     }
     Ok(shapes)
 }

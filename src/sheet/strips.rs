@@ -87,7 +87,7 @@ fn figure(sheet: &Sheet, row: &Row, segment: &Segment, occupied: &mut Occupied) 
     for piece in pieces {
         let heights: Vec<f64> = piece.iter().map(|(_, value)| row.base - value * row.gain).collect();
         let points: Vec<(f64, f64)> =
-            thin::kept(&heights).into_iter().map(|index| (piece[index].0, heights[index])).collect();
+            thin::kept(&heights).into_iter().map(|(index, y)| (piece[index].0, y)).collect();
         occupied.line(&points, line.width / 2.0);
         shapes.push(polyline(&points, pen(line)));
     }

@@ -1,39 +1,48 @@
 //! Leaving out vertices that the drawn line doesn't need.
 
-/// How far the drawn line may lie from a vertex that was left out, in mm; what is left of 0.005 mm covers
-/// the writer's rounding to whole micrometres.
-const TOLERANCE: f64 = 0.004;
+/// How far the drawn line may pass a sample, in mm; what is left of 0.005 mm covers the writer's rounding
+/// to whole micrometres.
+const TOLERANCE: f64 = 0.0044;
+/// Heights are multiples of this, in mm, where the tolerance allows it: fewer digits make a smaller file.
+const SHORT: f64 = 0.005;
 /// A trace keeps so many vertices where it has them.
 const FEWEST: usize = 200;
 
-/// Indices of the vertices to keep, first and last among them. `y` is in mm at equal steps of x; a vertex is
-/// left out only where the line between its kept neighbours passes it within [`TOLERANCE`] vertically.
-pub(super) fn kept(y: &[f64]) -> Vec<usize> {
-    let last = y.len().saturating_sub(1);
+/// The vertices to draw, as index and height, first and last among them. `y` is in mm at equal steps of x;
+/// the line through the vertices passes every sample within [`TOLERANCE`] vertically.
+pub(super) fn kept(y: &[f64]) -> Vec<(usize, f64)> {
+    let Some(&first) = y.first() else { return Vec::new() };
+    let last = y.len() - 1;
     let longest = (last / (FEWEST + 10)).max(1);
-    let mut kept = vec![0];
-    let mut anchor = 0;
-    // The slopes from the anchor that pass all vertices since it.
-    let (mut low, mut high) = (f64::NEG_INFINITY, f64::INFINITY);
-    let mut index = 1;
-    while index <= last {
-        let run = (index - anchor) as f64;
-        let rise = y[index] - y[anchor];
-        let slope = rise / run;
-        if index - anchor > 1 && (slope < low || slope > high || index - anchor > longest) {
-            anchor = index - 1;
-            kept.push(anchor);
-            (low, high) = (f64::NEG_INFINITY, f64::INFINITY);
-            continue;
+    let mut kept = vec![(0, first)];
+    let mut anchor = (0, first);
+    while anchor.0 < last {
+        // The slopes from the anchor that pass every sample so far, narrowed until none is left.
+        let (mut low, mut high) = (f64::NEG_INFINITY, f64::INFINITY);
+        let mut end = anchor.0;
+        while end < last && end - anchor.0 < longest {
+            let run = (end + 1 - anchor.0) as f64;
+            let rise = y[end + 1] - anchor.1;
+            let narrowed = (low.max((rise - TOLERANCE) / run), high.min((rise + TOLERANCE) / run));
+            if narrowed.0 > narrowed.1 {
+                break;
+            }
+            (low, high) = narrowed;
+            end += 1;
         }
-        low = low.max((rise - TOLERANCE) / run);
-        high = high.min((rise + TOLERANCE) / run);
-        index += 1;
-    }
-    if last > 0 {
-        kept.push(last);
+        let run = (end - anchor.0) as f64;
+        anchor = (end, short(anchor.1 + low * run, y[end], anchor.1 + high * run));
+        kept.push(anchor);
     }
     kept
+}
+
+/// The height between `low` and `high` that is written shortest: a multiple of [`SHORT`] near `wanted` if
+/// there is one.
+fn short(low: f64, wanted: f64, high: f64) -> f64 {
+    let nearest = wanted.clamp(low, high);
+    let rounded = (nearest / SHORT).round() * SHORT;
+    if (low..=high).contains(&rounded) { rounded } else { nearest }
 }
 
 #[cfg(test)]
@@ -53,12 +62,12 @@ mod tests {
     fn the_drawn_line_stays_within_its_tolerance_of_every_vertex() {
         let y = wave(5000);
         let kept = kept(&y);
-        assert!(kept.len() < 4000 && kept.len() >= FEWEST, "{}", kept.len());
+        assert!(kept.len() < 2000 && kept.len() >= FEWEST, "{}", kept.len());
         for pair in kept.windows(2) {
-            for index in pair[0]..=pair[1] {
-                let part = (index - pair[0]) as f64 / (pair[1] - pair[0]) as f64;
-                let drawn = y[pair[0]] + (y[pair[1]] - y[pair[0]]) * part;
-                assert!((drawn - y[index]).abs() <= TOLERANCE + 1e-12);
+            let ((from, first), (to, last)) = (pair[0], pair[1]);
+            for (index, value) in y.iter().enumerate().take(to + 1).skip(from) {
+                let drawn = first + (last - first) * (index - from) as f64 / (to - from) as f64;
+                assert!((drawn - value).abs() <= TOLERANCE + 1e-9);
             }
         }
     }
@@ -67,7 +76,8 @@ mod tests {
     fn a_flat_trace_keeps_enough_vertices_and_a_short_one_its_ends() {
         assert!(kept(&vec![1.0; 1250]).len() >= FEWEST);
         assert_eq!(kept(&vec![1.0; 201]).len(), 201);
-        assert_eq!(kept(&[1.0]), [0]);
-        assert_eq!(kept(&[1.0, 2.0]), [0, 1]);
+        assert_eq!(kept(&[1.0]), [(0, 1.0)]);
+        assert_eq!(kept(&[1.0, 2.0]), [(0, 1.0), (1, 2.0)]);
+        assert!(kept(&[]).is_empty());
     }
 }

@@ -9,9 +9,12 @@ use crate::recording::Lead;
 
 /// Speeds and gains of magnified beats; the largest that fit are taken.
 const SPEEDS: [f64; 3] = [100.0, 50.0, 25.0];
+const SLOWEST: f64 = 12.5;
 const GAINS: [f64; 7] = [40.0, 20.0, 10.0, 5.0, 2.5, 1.0, 0.5];
 /// The part of the height that the focus may fill.
 const FOCUS: f64 = 0.6;
+/// Between a bracket and its name.
+const NAME_GAP: f64 = 0.8;
 /// Distance between the rows of brackets.
 const BRACKET: f64 = 2.9;
 
@@ -43,7 +46,12 @@ pub(super) fn elements(sheet: &Sheet, area: Area, view: &View) -> Result<Vec<Ele
     let caption = area.top + name.cap();
     let below = BRACKET * view.brackets.len() as f64;
     let plot = Area { top: caption + 1.2, height: area.height - name.cap() - 1.2 - below, ..area };
-    let speed = SPEEDS.into_iter().find(|speed| (view.to - view.from) * speed <= plot.width).unwrap_or(25.0);
+    let mut ends = vec![(view.to, 0.0)];
+    for bracket in &view.brackets {
+        ends.push((bracket.to, NAME_GAP + label.width(&bracket.text)?));
+    }
+    let fits = |speed: &f64| ends.iter().all(|(to, name)| (to - view.from) * speed + name <= plot.width);
+    let speed = SPEEDS.into_iter().find(fits).unwrap_or(SLOWEST);
     let to = view.from + plot.width / speed;
     let value = |time: f64| -> Option<f64> {
         let index = view.beat.fiducial.0 as f64 + time * view.beat.rate.get();
@@ -87,9 +95,8 @@ pub(super) fn elements(sheet: &Sheet, area: Area, view: &View) -> Result<Vec<Ele
         marks.push(polyline(&[(left, plot.top), (left, line)], thin));
         marks.push(polyline(&[(right, plot.top), (right, line)], thin));
         marks.push(polyline(&[(left, line), (right, line)], pen(Line { width: 0.3, ..mark })));
-        let width = label.width(&bracket.text)?;
-        let after = right + 0.8;
-        let text_left = if after + width <= area.right() { after } else { left - 0.8 - width };
+        let room = (area.right() - label.width(&bracket.text)?).max(area.left);
+        let text_left = (right + NAME_GAP).min(room);
         texts.push(label.inked(mark.ink).left(text_left, line + label.cap() / 2.0, &bracket.text));
         foot += BRACKET;
     }

@@ -2,7 +2,7 @@
 
 use super::super::draw::{artifact, paragraph, pen, polyline};
 use super::super::given::{Sheet, listed, plain};
-use super::super::identification::ADULT;
+use super::super::identification::{self, ADULT};
 use super::super::layout::Area;
 use super::super::trace::Row;
 use super::super::{ComposeError, Element, Role};
@@ -29,7 +29,7 @@ pub(super) fn elements(
     let mut elements = vec![Element { role: Role::Heading, shapes: heading }, rule];
     let body = sheet.body();
     let mut lines: Vec<Printed> = Vec::new();
-    for note in all(sheet, halved) {
+    for note in all(sheet, halved)? {
         let strong = note.weight == Weight::Caution;
         let style = if strong { body.bold() } else { body };
         lines.extend(style.wrap(&note.text, area.width)?.into_iter().map(|line| (line, strong)));
@@ -97,7 +97,7 @@ fn reader(sheet: &Sheet, area: Area) -> Vec<Element> {
 }
 
 /// Everything to be said, cautions first.
-fn all(sheet: &Sheet, halved: &[String]) -> Vec<Note> {
+fn all(sheet: &Sheet, halved: &[String]) -> Result<Vec<Note>, ComposeError> {
     let recording = &sheet.case.recording;
     let mut notes: Vec<Note> = recording.notes.clone();
     notes.extend(halved.iter().map(Note::caution));
@@ -119,11 +119,27 @@ fn all(sheet: &Sheet, halved: &[String]) -> Vec<Note> {
         )));
     }
     if !recording.occasion.remarks.is_empty() {
-        let remarks = recording.occasion.remarks.join(" ");
+        let remarks = joined(&recording.occasion.remarks);
         notes.push(Note::information(format!("The source remarks: {remarks}")));
     }
+    for field in identification::cut_short(sheet)? {
+        let value = field.value.unwrap_or_default();
+        notes.push(Note::information(format!("{} in full: {value}", field.label)));
+    }
     notes.sort_by_key(|note| std::cmp::Reverse(note.weight));
-    notes
+    Ok(notes)
+}
+
+/// Remarks in one text, a semicolon between those that end without a stop.
+fn joined(remarks: &[String]) -> String {
+    let mut text = String::new();
+    for remark in remarks {
+        if !text.is_empty() {
+            text.push_str(if text.ends_with(['.', ':', ';', '!', '?']) { " " } else { "; " });
+        }
+        text.push_str(remark.trim());
+    }
+    text
 }
 
 /// Which part is shown and how the columns lie in time.
