@@ -2,6 +2,7 @@
 
 mod architecture;
 mod batch;
+mod cli;
 mod demo;
 mod input;
 mod measure;

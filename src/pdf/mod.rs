@@ -1,7 +1,6 @@
 //! Finished pages in, PDF bytes out: the only place that knows points. It decides nothing.
 //!
-//! One unit of a page's content is a micrometre, so that every vertex is a whole number, exact and
-//! short. Fonts are embedded, cut to the glyphs used; text is searchable; the structure is tagged.
+//! One unit of a page's content is 2.5 µm, so that every vertex is a whole number and short. Fonts are embedded, cut to the glyphs used; text is searchable; the structure is tagged.
 //! Nothing comes from the clock, from chance or from the machine: the same pages give the same bytes.
 
 mod content;
@@ -77,6 +76,6 @@ pub fn write(pages: &[Page], info: &DocumentInfo) -> Result<Vec<u8>, Error> {
     let structure_root = structure.finish(&mut document);
     info::finish(&mut document, tree, structure_root, info, &fingerprint)?;
     let mut bytes = Vec::with_capacity(96 * 1024);
-    document.save_to(&mut bytes).map_err(|error| Error::Document(error.to_string()))?;
+    document.save_modern(&mut bytes).map_err(|error| Error::Document(error.to_string()))?;
     Ok(bytes)
 }

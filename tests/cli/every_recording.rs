@@ -25,8 +25,10 @@ fn print_and_measure(name: &str, count: usize) -> Option<Vec<(PathBuf, Value)>> 
     assert_eq!(headers.len(), count);
     let temp = TempDir::new();
     let sheets = temp.path().join("sheets");
-    let printed =
-        leadsheet(temp.path(), &["print", folder.to_str().expect("UTF-8"), "-o", sheets.to_str().expect("UTF-8")]);
+    let printed = leadsheet(
+        temp.path(),
+        &["print", folder.to_str().expect("UTF-8"), "-o", sheets.to_str().expect("UTF-8")],
+    );
     assert_eq!(printed.status, Some(0), "{}", printed.stderr);
     for header in &headers {
         let sheet = sheets.join(header.file_stem().expect("a name")).with_extension("pdf");
@@ -39,10 +41,13 @@ fn print_and_measure(name: &str, count: usize) -> Option<Vec<(PathBuf, Value)>> 
         .into_par_iter()
         .map(|header| {
             let text =
-                leadsheet(temp.path(), &["measure", header.to_str().expect("UTF-8"), "--format", "json"]).ok();
+                leadsheet(temp.path(), &["measure", header.to_str().expect("UTF-8"), "--format", "json"])
+                    .ok();
             let document: Value = serde_json::from_str(&text).expect("JSON");
-            let broken: Vec<String> =
-                validator.iter_errors(&document).map(|error| format!("{}: {error}", error.instance_path())).collect();
+            let broken: Vec<String> = validator
+                .iter_errors(&document)
+                .map(|error| format!("{}: {error}", error.instance_path()))
+                .collect();
             assert!(broken.is_empty(), "{}: {}", header.display(), broken.join("; "));
             (header, document)
         })
@@ -74,13 +79,13 @@ fn all_84_labelled_rhythms_are_printed_and_measured_and_what_is_odd_is_said() {
     let Some(documents) = print_and_measure("rhythms", 84) else { return };
     // The notes on the data name three recordings with flat chest leads.
     for name in ["JS11438", "JS20004", "JS20008"] {
-        let (_, document) =
-            documents.iter().find(|(header, _)| header.ends_with(format!("{name}.hea"))).expect("it is there");
-        let absent = document["recording"]["leads"]
-            .as_array()
-            .expect("leads")
+        let (_, document) = documents
             .iter()
-            .any(|lead| lead["origin"] == "absent" && lead["reason"].as_str().is_some_and(|why| why.contains("flat")));
+            .find(|(header, _)| header.ends_with(format!("{name}.hea")))
+            .expect("it is there");
+        let absent = document["recording"]["leads"].as_array().expect("leads").iter().any(|lead| {
+            lead["origin"] == "absent" && lead["reason"].as_str().is_some_and(|why| why.contains("flat"))
+        });
         assert!(absent, "{name}: flat leads are not said");
     }
 }

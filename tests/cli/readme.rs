@@ -47,7 +47,10 @@ fn every_command_of_the_readme_works() {
             // This very run is `cargo test`; the check is that CI calls the same.
             ["cargo", "test"] => {
                 let ci = fs::read_to_string(project().join(".ci/run")).expect(".ci/run");
-                assert!(ci.lines().any(|line| line.starts_with("cargo test")), "CI runs the README's test command");
+                assert!(
+                    ci.lines().any(|line| line.starts_with("cargo test")),
+                    "CI runs the README's test command"
+                );
                 continue;
             }
             ["cargo", "bench"] => continue,

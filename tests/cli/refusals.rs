@@ -38,23 +38,56 @@ fn bad_recordings_are_refused_with_what_to_do() {
     let folder = temp.path();
     refused(folder, "missing.hea", &["missing.hea"]);
     refused(folder, &csv(folder, "empty.hea", ""), &["empty"]);
-    refused(folder, &csv(folder, "far.hea", "far 1 500 10\n../far.dat 16 200 16 0 0 0 0 II\n"), &["../far.dat"]);
-    refused(folder, &csv(folder, "root.hea", "root 1 500 10\n/etc/passwd 16 200 16 0 0 0 0 II\n"), &["/etc/passwd"]);
-    refused(folder, &csv(folder, "gone.hea", "gone 1 500 10\ngone.dat 16 200 16 0 0 0 0 II\n"), &["gone.dat"]);
+    refused(
+        folder,
+        &csv(folder, "far.hea", "far 1 500 10\n../far.dat 16 200 16 0 0 0 0 II\n"),
+        &["../far.dat"],
+    );
+    refused(
+        folder,
+        &csv(folder, "root.hea", "root 1 500 10\n/etc/passwd 16 200 16 0 0 0 0 II\n"),
+        &["/etc/passwd"],
+    );
+    refused(
+        folder,
+        &csv(folder, "gone.hea", "gone 1 500 10\ngone.dat 16 200 16 0 0 0 0 II\n"),
+        &["gone.dat"],
+    );
     fs::write(folder.join("z.dat"), vec![0; 2000]).expect("a file");
     refused(folder, &csv(folder, "zero.hea", "zero 1 0 10\nz.dat 16 200 16 0 0 0 0 II\n"), &["line 1"]);
-    refused(folder, &csv(folder, "many.hea", "many 99999999 500 10\nz.dat 16 200 16 0 0 0 0 II\n"), &["99999999"]);
-    refused(folder, &csv(folder, "word.hea", "word one 500 10\nz.dat 16 200 16 0 0 0 0 II\n"), &["line 1", "one"]);
+    refused(
+        folder,
+        &csv(folder, "many.hea", "many 99999999 500 10\nz.dat 16 200 16 0 0 0 0 II\n"),
+        &["99999999"],
+    );
+    refused(
+        folder,
+        &csv(folder, "word.hea", "word one 500 10\nz.dat 16 200 16 0 0 0 0 II\n"),
+        &["line 1", "one"],
+    );
     refused(folder, &csv(folder, "flat.hea", "flat 1 500 1000\nz.dat 16 200 16 0 0 0 0 II\n"), &["flat"]);
     refused(folder, &csv(folder, "cut.hea", "cut 1 500 90000\nz.dat 16 200 16 0 0 0 0 II\n"), &["z.dat"]);
     refused(folder, &csv(folder, "unit.csv", "time [s],I,II\n0,0.1,0.1\n0.002,0.1,0.1\n"), &["unit"]);
-    refused(folder, &csv(folder, "nan.csv", "time [s],I [mV],II [mV]\n0,0,0\n0.002,NaN,0\n"), &["line 3", "NaN"]);
-    refused(folder, &csv(folder, "text.csv", "time [s],I [mV],II [mV]\n0,0,0\n0.002,high,0\n"), &["line 3", "high"]);
+    refused(
+        folder,
+        &csv(folder, "nan.csv", "time [s],I [mV],II [mV]\n0,0,0\n0.002,NaN,0\n"),
+        &["line 3", "NaN"],
+    );
+    refused(
+        folder,
+        &csv(folder, "text.csv", "time [s],I [mV],II [mV]\n0,0,0\n0.002,high,0\n"),
+        &["line 3", "high"],
+    );
     let unnamed = wave(10.0, 1.0).replacen("I [mV],II [mV]", "left [mV],right [mV]", 1);
     refused(folder, &csv(folder, "names.csv", &unnamed), &["left"]);
     refused(folder, &csv(folder, "short.csv", &wave(1.0, 1.0)), &["2.5 s"]);
-    refused(folder, &csv(folder, "letter.txt", "Dear colleague,\nthank you for the referral.\n"), &["formats"]);
-    let slow = "time [s],II [mV]\n".to_owned() + &(0..400).map(|n| format!("{},{}\n", n as f64 * 0.02, n % 3)).collect::<String>();
+    refused(
+        folder,
+        &csv(folder, "letter.txt", "Dear colleague,\nthank you for the referral.\n"),
+        &["formats"],
+    );
+    let slow = "time [s],II [mV]\n".to_owned()
+        + &(0..400).map(|n| format!("{},{}\n", n as f64 * 0.02, n % 3)).collect::<String>();
     refused(folder, &csv(folder, "slow.csv", &slow), &["50", "100"]);
 }
 

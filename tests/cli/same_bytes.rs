@@ -38,7 +38,12 @@ fn one_thread_and_many_give_the_same_sheets() {
     for entry in fs::read_dir(folder.path().join("one")).expect("sheets") {
         let path = entry.expect("an entry").path();
         let other = folder.path().join("many").join(path.file_name().expect("a name"));
-        assert_eq!(fs::read(&path).expect("a sheet"), fs::read(&other).expect("its twin"), "{}", path.display());
+        assert_eq!(
+            fs::read(&path).expect("a sheet"),
+            fs::read(&other).expect("its twin"),
+            "{}",
+            path.display()
+        );
         compared += 1;
     }
     assert!(compared >= 3, "only {compared} sheets");

@@ -4,6 +4,7 @@ pub mod annotations;
 pub mod dipole;
 pub mod golden;
 pub mod npz;
+pub mod program;
 
 use std::path::{Path, PathBuf};
 use std::sync::atomic::{AtomicUsize, Ordering};
