@@ -13,11 +13,6 @@ pub struct Annotation {
 
 /// Codes that mark a beat (ecgcodes.h of the WFDB library).
 pub const BEATS: &[u16] = &[1, 2, 3, 4, 5, 6, 7, 8, 9, 10, 11, 12, 13, 25, 30, 34, 35, 38, 41];
-/// Begin of a wave.
-pub const WAVE_ONSET: u16 = 39;
-/// End of a wave.
-pub const WAVE_OFFSET: u16 = 40;
-
 /// All annotations of a file.
 pub fn annotations(path: &Path) -> Vec<Annotation> {
     let bytes = std::fs::read(path).unwrap_or_else(|error| panic!("{}: {error}", path.display()));
