@@ -6,5 +6,6 @@ mod cli;
 mod demo;
 mod input;
 mod measure;
+mod pdf;
 mod sheet;
 mod support;
