@@ -53,7 +53,7 @@ fn one_bad_recording_stops_no_other_and_outcomes_keep_their_order() {
         Some("5.hea") => panic!("a defect"),
         _ => Ok(b"sheet".to_vec()),
     };
-    let outcomes: Vec<Outcome> = run(&plan, work, || ());
+    let outcomes: Vec<Outcome> = run(&plan, 3, work, || ());
     let order: Vec<_> = outcomes.iter().map(|outcome| outcome.input.clone()).collect();
     assert_eq!(order, plan.jobs.iter().map(|job| job.input.clone()).collect::<Vec<_>>());
     let failed: Vec<usize> = (0..8).filter(|&n| outcomes[n].result.is_err()).collect();

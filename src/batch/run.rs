@@ -14,10 +14,11 @@ pub struct Outcome {
     pub result: Result<PathBuf, String>,
 }
 
-/// Carries out `plan`: `work` makes the bytes of a sheet, `done` is told after each.
-/// One failure never stops the rest; the outcomes come in input order.
+/// Carries out `plan` on `threads` (0: what rayon takes by itself): `work` makes the bytes of a sheet,
+/// `done` is told after each. One failure never stops the rest; the outcomes come in input order.
 pub fn run(
     plan: &Plan,
+    threads: usize,
     work: impl Fn(&Job) -> Result<Vec<u8>, String> + Sync,
     done: impl Fn() + Sync,
 ) -> Vec<Outcome> {
@@ -37,6 +38,10 @@ pub fn run(
     match plan.jobs.as_slice() {
         // A pool of threads costs more than one sheet.
         [job] => vec![one(job)],
-        jobs => jobs.par_iter().map(one).collect(),
+        jobs => match rayon::ThreadPoolBuilder::new().num_threads(threads).build() {
+            Ok(pool) => pool.install(|| jobs.par_iter().map(one).collect()),
+            // No threads to be had: one after the other.
+            Err(_) => jobs.iter().map(one).collect(),
+        },
     }
 }

@@ -35,9 +35,18 @@ pub(super) fn carry_out(
     } else {
         ProgressBar::hidden()
     };
-    let outcomes = run(plan, work, || bar.inc(1));
+    let outcomes = run(plan, threads(), work, || bar.inc(1));
     bar.finish_and_clear();
     summary(&outcomes)
+}
+
+/// Two threads a core: while one waits for its file to reach the disk, another computes. Rayon's own
+/// variable overrules it.
+fn threads() -> usize {
+    match std::env::var_os("RAYON_NUM_THREADS") {
+        Some(_) => 0,
+        None => 2 * std::thread::available_parallelism().map_or(1, usize::from),
+    }
 }
 
 /// One line a sheet on stdout, one a failure on stderr, and for several a count.
