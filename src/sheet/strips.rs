@@ -1,6 +1,6 @@
 //! The grid field: grid, calibration pulses, traces, separators, lead names.
 
-use super::draw::{artifact, paragraph, pen, polyline, rect};
+use super::draw::{Style, artifact, paragraph, pen, polyline, rect};
 use super::given::{Sheet, plain};
 use super::layout::Area;
 use super::occupied::Occupied;
@@ -16,6 +16,10 @@ const PULSE_FOOT: f64 = 1.5;
 const SEPARATOR: (f64, f64) = (4.0, 7.0);
 /// Least distance between a text and a line.
 const CLEAR: f64 = 0.4;
+/// Below the baseline of a name.
+const DESCENT: f64 = 0.6;
+/// Between a name and what is said beside it.
+const GAP: f64 = 1.0;
 
 /// All of a page's grid field, bottom first.
 pub(super) fn elements(sheet: &Sheet, rows: &[Row]) -> Result<Vec<Element>, ComposeError> {
@@ -42,13 +46,13 @@ pub(super) fn elements(sheet: &Sheet, rows: &[Row]) -> Result<Vec<Element>, Comp
         elements.extend(row.segments.iter().filter_map(|segment| figure(sheet, row, segment, &mut occupied)));
     }
     let mut names = Vec::new();
+    for row in rows.iter().filter(|row| row.gain != sheet.options.gain.get()) {
+        names.push(own_gain(sheet, row, &mut occupied)?);
+    }
     for row in rows {
         for segment in &row.segments {
             names.extend(label(sheet, row, segment, &mut occupied)?);
             names.extend(breaks(sheet, row, segment, &mut occupied)?);
-        }
-        if row.gain != sheet.options.gain.get() {
-            names.push(own_gain(sheet, row));
         }
     }
     elements.push(paragraph(names));
@@ -108,15 +112,41 @@ fn name(segment: &Segment) -> String {
     format!("{sign}{}", segment.shown.lead)
 }
 
-/// The lead's name and what must be said beside it, where no trace runs.
+/// The lead's name and what must be said beside it, where no trace runs. Where a dense trace leaves no
+/// room for both, the name stands alone (the notes say the rest), then smaller.
 fn label(
     sheet: &Sheet,
     row: &Row,
     segment: &Segment,
     occupied: &mut Occupied,
 ) -> Result<Vec<Shape>, ComposeError> {
-    let (name_style, beside) = (sheet.lead_name(), sheet.label());
+    let beside = sheet.label();
+    let small = Style { size: beside.size, ..sheet.lead_name() };
     let name = name(segment);
+    let said = said(sheet, segment);
+    let mut last = None;
+    for (style, said) in [(sheet.lead_name(), said.as_str()), (sheet.lead_name(), ""), (small, "")] {
+        let name_width = style.width(&name)?;
+        let rest = if said.is_empty() { 0.0 } else { GAP + beside.width(said)? };
+        let (width, cap) = (name_width + rest, style.cap());
+        let Some((taken, (x, y))) = place(sheet, row, segment, (width, cap), occupied) else { continue };
+        let mut shapes = vec![style.left(x, y, &name)];
+        if !said.is_empty() {
+            shapes.push(beside.left(x + name_width + GAP, y, said));
+        }
+        last = Some((around((x, y), width, cap), shapes));
+        if taken == 0 {
+            break;
+        }
+    }
+    Ok(last.map_or(Vec::new(), |(area, shapes)| {
+        occupied.area(area);
+        shapes
+    }))
+}
+
+/// What must be said beside a lead's name.
+fn said(sheet: &Sheet, segment: &Segment) -> String {
     let mut said: Vec<String> = Vec::new();
     if sheet.derived(segment.shown.lead) {
         said.push("derived".to_owned());
@@ -127,19 +157,17 @@ fn label(
     if let Content::Nothing(why) = &segment.content {
         said.push(format!("absent: {why}"));
     }
-    let said = said.join(", ");
-    let name_width = name_style.width(&name)?;
-    let gap = if said.is_empty() { 0.0 } else { 1.0 };
-    let width = name_width + gap + beside.width(&said)?;
-    let Some((x, y)) = place(row, segment, width, name_style.cap(), occupied) else {
-        return Ok(Vec::new());
-    };
-    occupied.area(Area { left: x, top: y - name_style.cap(), width, height: name_style.cap() + 0.6 });
-    let mut shapes = vec![name_style.left(x, y, &name)];
-    if !said.is_empty() {
-        shapes.push(beside.left(x + name_width + gap, y, &said));
+    said.join(", ")
+}
+
+/// The box of a text with what must stay clear around it.
+fn around(at: (f64, f64), width: f64, cap: f64) -> Area {
+    Area {
+        left: at.0 - CLEAR,
+        top: at.1 - cap - CLEAR,
+        width: width + 2.0 * CLEAR,
+        height: cap + DESCENT + 2.0 * CLEAR,
     }
-    Ok(shapes)
 }
 
 /// Says in a break what broke the trace, where there is room.
@@ -156,12 +184,7 @@ fn breaks(
         let text = if gap.saturated { "at limit" } else { "no signal" };
         let width = style.width(text)?;
         let middle = (gap.left + gap.right) / 2.0;
-        let area = Area {
-            left: middle - width / 2.0 - CLEAR,
-            top: row.base - style.cap() - CLEAR,
-            width: width + 2.0 * CLEAR,
-            height: style.cap() + 0.6 + 2.0 * CLEAR,
-        };
+        let area = around((middle - width / 2.0, row.base), width, style.cap());
         if gap.right - gap.left > area.width && occupied.taken(area) == 0 {
             occupied.area(area);
             shapes.push(style.middle(middle, row.base, text));
@@ -170,15 +193,20 @@ fn breaks(
     Ok(shapes)
 }
 
-/// The place for a text of this size that is nearest to the segment's top left corner and free of lines;
-/// where none is free, the one that touches least.
-fn place(row: &Row, segment: &Segment, width: f64, cap: f64, occupied: &Occupied) -> Option<(f64, f64)> {
-    let (first_x, last_x) = (segment.left + 1.0, segment.right - width - 1.0);
+/// The place for a text of this width and height that is nearest to the segment's top left corner and free
+/// of lines; behind the trace or below the row's pulse where the segment has none; and where there is none at
+/// all, the one that touches least. Also how much it touches.
+fn place(
+    sheet: &Sheet,
+    row: &Row,
+    segment: &Segment,
+    (width, cap): (f64, f64),
+    occupied: &Occupied,
+) -> Option<(usize, (f64, f64))> {
+    let field = sheet.geometry.field;
+    let (first_x, last_x) = (segment.left + GAP, segment.right - width - GAP);
     let (first_y, last_y) = (row.top + cap + 0.8, row.bottom - 1.0);
-    let steps = |from: f64, to: f64, step: f64| {
-        let count = ((to - from) / step).floor().max(0.0) as u32;
-        (0..=count).map(move |index| from + f64::from(index) * step)
-    };
+    let taken = |at| occupied.taken(around(at, width, cap));
     let mut best: Option<(usize, f64, (f64, f64))> = None;
     for x in steps(first_x, last_x, 1.0) {
         let sideways = x - first_x;
@@ -187,24 +215,48 @@ fn place(row: &Row, segment: &Segment, width: f64, cap: f64, occupied: &Occupied
         }
         for y in steps(first_y, last_y, 0.5) {
             let cost = sideways + (y - first_y) * 0.5;
-            let area = Area {
-                left: x - CLEAR,
-                top: y - cap - CLEAR,
-                width: width + 2.0 * CLEAR,
-                height: cap + 0.6 + 2.0 * CLEAR,
-            };
-            let taken = occupied.taken(area);
+            let taken = taken((x, y));
             if best.is_none_or(|(least, lowest, _)| (taken, cost) < (least, lowest)) {
                 best = Some((taken, cost, (x, y)));
             }
         }
     }
-    best.map(|(_, _, at)| at)
+    if best.is_some_and(|(taken, _, _)| taken > 0) {
+        let behind = (segment.right + GAP, row.base + cap / 2.0);
+        let column = (field.left + GAP, below_foot(sheet, row, cap));
+        let has_behind = behind.0 + width + CLEAR < field.right();
+        let has_column =
+            segment.left <= sheet.traces_left() + 0.1 && width < sheet.layout.strips.pulse_column - 2.0;
+        let others = [has_behind.then_some(behind), has_column.then_some(column)];
+        if let Some(at) = others.into_iter().flatten().find(|&at| taken(at) == 0) {
+            return Some((0, at));
+        }
+    }
+    best.map(|(taken, _, at)| (taken, at))
 }
 
-/// Says below the pulse that a row has a gain of its own.
-fn own_gain(sheet: &Sheet, row: &Row) -> Shape {
+fn steps(from: f64, to: f64, step: f64) -> impl Iterator<Item = f64> {
+    let count = ((to - from) / step).floor().max(0.0) as u32;
+    (0..=count).map(move |index| from + f64::from(index) * step)
+}
+
+/// Baseline of a text under the foot of a row's pulse.
+fn below_foot(sheet: &Sheet, row: &Row, cap: f64) -> f64 {
+    row.base + cap + CLEAR + sheet.layout.lines.pulse.width
+}
+
+/// Says below the pulse, or above it, that a row has a gain of its own.
+fn own_gain(sheet: &Sheet, row: &Row, occupied: &mut Occupied) -> Result<Shape, ComposeError> {
     let style = sheet.label().bold().inked(sheet.layout.texts.ink);
+    let text = format!("{} mm/mV", plain(row.gain));
+    let width = style.width(&text)?;
     let middle = sheet.geometry.field.left + sheet.layout.strips.pulse_column / 2.0;
-    style.middle(middle, row.base + style.cap() + 1.2, &format!("{} mm/mV", plain(row.gain)))
+    let above = row.base - PULSE_MILLIVOLTS * row.gain - CLEAR - DESCENT - sheet.layout.lines.pulse.width;
+    let area = |y| around((middle - width / 2.0, y), width, style.cap());
+    let y = [below_foot(sheet, row, style.cap()), above]
+        .into_iter()
+        .min_by_key(|&y| occupied.taken(area(y)))
+        .unwrap_or(above);
+    occupied.area(area(y));
+    Ok(style.middle(middle, y, &text))
 }

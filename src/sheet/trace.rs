@@ -37,10 +37,9 @@ impl Row {
             Content::Trace { pieces, .. } => Some(pieces),
             Content::Nothing(_) => None,
         });
-        traces
-            .flatten()
-            .flatten()
-            .fold((0.0, 0.0), |(low, high): (f64, f64), &(_, value)| (low.min(value), high.max(value)))
+        traces.flatten().flatten().fold((0.0, PULSE_MILLIVOLTS), |(low, high): (f64, f64), &(_, value)| {
+            (low.min(value), high.max(value))
+        })
     }
 }
 

@@ -1,3 +1,7 @@
 //! The sheet: layouts and composition.
 
+mod arrangement;
+mod geometry;
+mod golden;
 mod layout;
+mod scale;

@@ -5,6 +5,7 @@ pub mod dipole;
 pub mod golden;
 pub mod npz;
 pub mod program;
+pub mod sheets;
 pub mod tools;
 
 use std::path::{Path, PathBuf};
