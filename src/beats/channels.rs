@@ -55,11 +55,15 @@ impl Channels {
         let after = rate.count(Seconds::literal(0.016));
         for signal in &mut bridged.signals {
             for &spike in spikes {
-                let (start, end) = (spike.saturating_sub(before), (spike + after).min(signal.len() - 1));
+                let end = (spike + after).min(signal.len().saturating_sub(1));
+                let start = spike.saturating_sub(before);
+                if start >= end {
+                    continue;
+                }
                 let (first, last) = (signal[start], signal[end]);
-                for index in start..=end {
-                    let part = (index - start) as f64 / (end - start).max(1) as f64;
-                    signal[index] = first + (last - first) * part;
+                let width = (end - start).max(1) as f64;
+                for (step, value) in signal[start..=end].iter_mut().enumerate() {
+                    *value = first + (last - first) * step as f64 / width;
                 }
             }
         }

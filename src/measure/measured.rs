@@ -89,7 +89,7 @@ impl fmt::Display for Reason {
     fn fmt(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
         match self {
             Reason::TooFewBeats { needed, found } => write!(f, "{found} beats, {needed} needed"),
-            Reason::NoPBeforeQrs => write!(f, "no P before the QRS"),
+            Reason::NoPBeforeQrs => write!(f, "no separate P found"),
             Reason::PNotRelatedToQrs => write!(f, "P and QRS not related"),
             Reason::IrregularWithoutP => write!(f, "irregular, no repeated P"),
             Reason::Paced => write!(f, "paced rhythm"),

@@ -20,6 +20,8 @@ struct Cost {
 
 fn cost_of(arguments: &[&str], folder: &Path) -> Cost {
     let start = Instant::now();
+    // Waited for below, by wait4, which alone gives its usage.
+    #[allow(clippy::zombie_processes)]
     let child = Command::new(PROGRAM)
         .args(arguments)
         .current_dir(folder)
