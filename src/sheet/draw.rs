@@ -45,10 +45,9 @@ pub(super) fn paragraph(shapes: Vec<Shape>) -> Element {
     Element { role: Role::Paragraph, shapes }
 }
 
-/// Text that every face can draw: the faces lack U+2212, so an en dash stands for the minus; a character
-/// without a glyph becomes a visible sign.
+/// The text with a visible sign for what the faces can't draw.
 fn drawable(text: &str) -> String {
-    lettering::printable(&text.replace('−', "–")).0
+    lettering::printable(text).0
 }
 
 /// How a text looks.
