@@ -204,7 +204,7 @@ fn place(
     occupied: &Occupied,
 ) -> Option<(usize, (f64, f64))> {
     let field = sheet.geometry.field;
-    let (first_x, last_x) = (segment.left + GAP, segment.right - width - GAP);
+    let (first_x, last_x) = (segment.left + 1.5 * GAP, segment.right - width - GAP);
     let (first_y, last_y) = (row.top + cap + 0.8, row.bottom - 1.0);
     let taken = |at| occupied.taken(around(at, width, cap));
     let mut best: Option<(usize, f64, (f64, f64))> = None;
