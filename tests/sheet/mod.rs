@@ -4,4 +4,5 @@ mod arrangement;
 mod geometry;
 mod golden;
 mod layout;
+mod parts;
 mod scale;

@@ -7,7 +7,7 @@ use super::super::layout::Area;
 use super::super::trace::Row;
 use super::super::{ComposeError, Element, Role};
 use super::HEADING;
-use crate::findings::{Observation, Tachycardia, WaveAtEnd};
+use crate::findings::{Observation, RpClass, Search, Tachycardia, WaveAtEnd};
 use crate::recording::{Absence, Channel, Lead, Note, Weight};
 use crate::units::Spans;
 
@@ -110,6 +110,7 @@ fn all(sheet: &Sheet, halved: &[String]) -> Result<Vec<Note>, ComposeError> {
     notes.push(Note::information(shown(sheet)));
     notes.extend(leads(sheet));
     notes.extend(sheet.case.analysis.findings.tachycardias.iter().filter_map(tachycardia));
+    notes.extend(rp_class(&sheet.case.analysis.findings.retrograde_p));
     notes.extend(sheet.case.analysis.findings.observations.iter().map(observation));
     if let Some(sinus) = &sheet.case.sinus {
         let hash: String = sinus.recording.source.sha256.chars().take(12).collect();
@@ -223,6 +224,17 @@ fn tachycardia(found: &Tachycardia) -> Option<Note> {
     // One that fills the recording is what the whole sheet shows.
     (!said.is_empty())
         .then(|| Note::information(format!("Tachycardia of {:.0}/min {}", found.rate.get(), said.join("; "))))
+}
+
+/// How RP lies against PR and the cut-offs of the literature; a sentence, never a verdict.
+fn rp_class(search: &Search) -> Option<Note> {
+    let Search::Done(done) = search else { return None };
+    let text = match done.rp_class? {
+        RpClass::Short => "RP is shorter than PR",
+        RpClass::Long => "RP is longer than PR",
+        RpClass::AtTheLimit => "RP lies at the limit of the cut-offs or of PR: no class is named",
+    };
+    Some(Note::information(text))
 }
 
 fn observation(found: &Observation) -> Note {
