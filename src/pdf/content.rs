@@ -22,9 +22,12 @@ pub(super) struct Grids(Vec<(Grid, ObjectId)>);
 /// 0.25 µV at 5 mm/mV, 0.05 ms at 25 mm/s. Finer units only make the file longer.
 const PER_MM: i64 = 400;
 
+/// No number may be farther from 0 than this, so that neither sums nor the numbers of a PDF overflow.
+const FARTHEST: f64 = 1e9;
+
 /// Whole units of the content.
 fn units(length: Millimetres) -> i64 {
-    (length.get() * PER_MM as f64).round() as i64
+    (length.get() * PER_MM as f64).round().clamp(-FARTHEST, FARTHEST) as i64
 }
 
 /// Draws a page.
@@ -47,7 +50,7 @@ pub(super) fn page(
     painter.line(format_args!("1 J 1 j"));
     for element in &page.elements {
         painter.element(element, tags, |grid| {
-            let id = grids.place(document, grid, page)?;
+            let id = grids.place(document, grid)?;
             let name = format!("Grid{}", id.0);
             xobjects.set(name.as_str(), id);
             Ok(name)
@@ -57,31 +60,35 @@ pub(super) fn page(
 }
 
 impl Grids {
-    fn place(&mut self, document: &mut Document, grid: &Grid, page: &Page) -> Result<ObjectId, Error> {
-        if let Some((_, id)) = self.0.iter().find(|(known, _)| known == grid) {
+    /// The form that draws a grid of this size and look; its origin is the field's top left corner.
+    fn place(&mut self, document: &mut Document, grid: &Grid) -> Result<ObjectId, Error> {
+        let same = |known: &Grid| {
+            (known.field.width, known.field.height, known.fine, known.coarse)
+                == (grid.field.width, grid.field.height, grid.fine, grid.coarse)
+        };
+        if let Some((_, id)) = self.0.iter().find(|(known, _)| same(known)) {
             return Ok(*id);
         }
-        let height = units(page.paper.size().1);
-        let (left, top) = (units(grid.field.x), height - units(grid.field.y));
-        let (right, bottom) = (left + units(grid.field.width), top - units(grid.field.height));
-        let mut out = "0 J\n".to_owned();
+        let (width, height) = (units(grid.field.width), units(grid.field.height));
+        let mut out = "0 J [] 0 d\n".to_owned();
         for (coarse, pen) in [(false, &grid.fine), (true, &grid.coarse)] {
             let _ = writeln!(out, "{} w {} RG", units(pen.width), colour(pen.ink));
-            for x in
-                (left..=right).step_by(PER_MM as usize).filter(|x| ((x - left) % (5 * PER_MM) == 0) == coarse)
-            {
-                let _ = writeln!(out, "{x} {bottom} m {x} {top} l");
+            let rulings = |end: i64| {
+                (0..=end).step_by(PER_MM as usize).filter(move |at| (at % (5 * PER_MM) == 0) == coarse)
+            };
+            for x in rulings(width) {
+                let _ = writeln!(out, "{x} {} m {x} 0 l", -height);
             }
-            for y in (0..=top - bottom).step_by(PER_MM as usize).filter(|y| (y % (5 * PER_MM) == 0) == coarse)
-            {
-                let y = top - y;
-                let _ = writeln!(out, "{left} {y} m {right} {y} l");
+            for y in rulings(height) {
+                let _ = writeln!(out, "0 {} m {width} {} l", -y, -y);
             }
             out.push_str("S\n");
         }
         let edge = units(grid.coarse.width.max(grid.fine.width));
-        let bounds = [left - edge, bottom - edge, right + edge, top + edge].map(Object::from).to_vec();
-        let dictionary = dictionary! { "Type" => "XObject", "Subtype" => "Form", "BBox" => bounds };
+        let bounds = [-edge, -height - edge, width + edge, edge].map(Object::from).to_vec();
+        let dictionary = dictionary! {
+            "Type" => "XObject", "Subtype" => "Form", "BBox" => bounds, "Resources" => dictionary! {},
+        };
         let id = document.add_object(objects::compressed(dictionary, out.as_bytes())?);
         self.0.push((grid.clone(), id));
         Ok(id)
@@ -163,7 +170,8 @@ impl Painter<'_> {
         match shape {
             Shape::Grid(shape) => {
                 let name = grid(shape)?;
-                self.line(format_args!("q /{name} Do Q"));
+                let (x, y) = self.place(&Point { x: shape.field.x, y: shape.field.y });
+                self.line(format_args!("q 1 0 0 1 {x} {y} cm /{name} Do Q"));
             }
             Shape::Polyline { points, pen } => self.polyline(points, pen),
             Shape::Rect { rect, fill, pen } => self.rect(rect, *fill, pen.as_ref()),
@@ -204,15 +212,26 @@ impl Painter<'_> {
     }
 
     fn polyline(&mut self, points: &[Point], pen: &Pen) {
+        let [first, rest @ ..] = points else { return };
         self.stroke_with(pen);
-        for (index, point) in points.iter().enumerate() {
-            let (x, y) = self.place(point);
-            push_integer(&mut self.out, x);
-            self.out.push(' ');
-            push_integer(&mut self.out, y);
-            self.out.push_str(if index == 0 { " m\n" } else { " l\n" });
+        let mut last = self.place(first);
+        self.vertex(last, " m\n");
+        for (index, point) in rest.iter().enumerate() {
+            let next = self.place(point);
+            // A repeated point draws nothing, unless the line is but a dot.
+            if next != last || index == rest.len() - 1 {
+                self.vertex(next, " l\n");
+            }
+            last = next;
         }
         self.out.push_str("S\n");
+    }
+
+    fn vertex(&mut self, (x, y): (i64, i64), operator: &str) {
+        push_integer(&mut self.out, x);
+        self.out.push(' ');
+        push_integer(&mut self.out, y);
+        self.out.push_str(operator);
     }
 
     fn rect(&mut self, rect: &Rect, fill: Option<Ink>, pen: Option<&Pen>) {

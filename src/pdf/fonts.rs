@@ -4,6 +4,7 @@ use super::{Error, objects};
 use crate::lettering::Face;
 use crate::sheet::{Page, Shape};
 use lopdf::{Dictionary, Document, Object, ObjectId, dictionary};
+use sha2::{Digest, Sha256};
 use std::collections::BTreeMap;
 use std::fmt::Write;
 use subsetter::GlyphRemapper;
@@ -67,7 +68,7 @@ fn embed_face(document: &mut Document, face: Face, used: &BTreeMap<u16, char>) -
     let cut = subsetter::subset(face.bytes(), 0, &glyphs).map_err(|error| Error::Font(error.to_string()))?;
     let length = cut.len() as i64;
     let file = document.add_object(objects::compressed(dictionary! { "Length1" => length }, &cut)?);
-    let base = format!("LEADSH+NotoSans-{}", name(face));
+    let base = format!("{}+NotoSans-{}", subset_tag(&cut), name(face));
     let [left, bottom, right, top, ascent, descent, cap_height] = face.descriptor();
     let descriptor = document.add_object(dictionary! {
         "Type" => "FontDescriptor",
@@ -84,10 +85,8 @@ fn embed_face(document: &mut Document, face: Face, used: &BTreeMap<u16, char>) -
     let mut order: Vec<(u16, u16, char)> =
         used.iter().filter_map(|(&old, &character)| Some((glyphs.get(old)?, old, character))).collect();
     order.sort_unstable();
-    let widths: Vec<Object> = order
-        .iter()
-        .flat_map(|&(new, old, _)| [i64::from(new).into(), vec![objects::real(face.advance(old))].into()])
-        .collect();
+    // The new numbers of the glyphs follow each other from 1 (0 is the sign for a missing one).
+    let widths: Vec<Object> = order.iter().map(|&(_, old, _)| objects::real(face.advance(old))).collect();
     let descendant = document.add_object(dictionary! {
         "Type" => "Font",
         "Subtype" => "CIDFontType2",
@@ -99,7 +98,7 @@ fn embed_face(document: &mut Document, face: Face, used: &BTreeMap<u16, char>) -
         },
         "FontDescriptor" => descriptor,
         "DW" => 0,
-        "W" => widths,
+        "W" => vec![1.into(), widths.into()],
         "CIDToGIDMap" => "Identity",
     });
     let map = document.add_object(objects::compressed(dictionary! {}, unicode_map(&order).as_bytes())?);
@@ -112,6 +111,11 @@ fn embed_face(document: &mut Document, face: Face, used: &BTreeMap<u16, char>) -
         "ToUnicode" => map,
     });
     Ok(Embedded { face, glyphs, font })
+}
+
+/// Six capitals that tell this subset from others of the same font (ISO 32000-1, 9.6.4).
+fn subset_tag(cut: &[u8]) -> String {
+    Sha256::digest(cut).iter().take(6).map(|byte| char::from(b'A' + byte % 26)).collect()
 }
 
 /// The ToUnicode map (ISO 32000-1, 9.10.3), at most 100 entries a block.

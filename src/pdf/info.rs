@@ -20,21 +20,19 @@ pub struct DocumentInfo {
     pub date: Option<(NaiveDateTime, Option<FixedOffset>)>,
 }
 
-impl DocumentInfo {
-    /// What of it goes into the file's identifier.
-    pub(super) fn fingerprint(&self) -> Vec<u8> {
-        format!("{self:?}").into_bytes()
-    }
-}
-
-/// Completes the document: catalogue, information dictionary, XMP, output intent, identifier.
+/// Completes the document: catalogue, information dictionary, XMP, output intent.
 pub(super) fn finish(
     document: &mut Document,
     pages: ObjectId,
     structure: ObjectId,
     info: &DocumentInfo,
-    fingerprint: &[u8],
 ) -> Result<(), Error> {
+    let info = &DocumentInfo {
+        title: plain(&info.title),
+        subject: plain(&info.subject),
+        creator: plain(&info.creator),
+        ..*info
+    };
     let metadata = document.add_object(
         Stream::new(dictionary! { "Type" => "Metadata", "Subtype" => "XML" }, xmp(info).into_bytes())
             .with_compression(false),
@@ -74,12 +72,28 @@ pub(super) fn finish(
         dictionary.set("ModDate", objects::text(&date));
     }
     let information = document.add_object(dictionary);
-    let digest = Sha256::digest(fingerprint);
-    let identifier = Object::String(digest[..16].to_vec(), StringFormat::Hexadecimal);
     document.trailer.set("Root", catalogue);
     document.trailer.set("Info", information);
-    document.trailer.set("ID", vec![identifier.clone(), identifier]);
     Ok(())
+}
+
+/// The bytes of a complete document, with an identifier (ISO 32000-1, 14.4) made from its content alone.
+pub(super) fn save(document: &mut Document) -> Result<Vec<u8>, Error> {
+    let failed = |error: std::io::Error| Error::Document(error.to_string());
+    let mut bytes = Vec::with_capacity(96 * 1024);
+    document.save_to(&mut bytes).map_err(failed)?;
+    let digest = Sha256::digest(&bytes);
+    let identifier = Object::String(digest[..16].to_vec(), StringFormat::Hexadecimal);
+    document.trailer.set("ID", vec![identifier.clone(), identifier]);
+    bytes.clear();
+    document.save_modern(&mut bytes).map_err(failed)?;
+    Ok(bytes)
+}
+
+/// Without what neither XML 1.0 (2.2) nor a line of text may hold.
+fn plain(text: &str) -> String {
+    let allowed = |character: char| !character.is_control() && !matches!(character, '\u{FFFE}' | '\u{FFFF}');
+    text.chars().map(|character| if allowed(character) { character } else { ' ' }).collect()
 }
 
 fn pdf_zone(zone: Option<FixedOffset>) -> String {
@@ -107,7 +121,9 @@ fn xmp(info: &DocumentInfo) -> String {
 <x:xmpmeta xmlns:x=\"adobe:ns:meta/\">\n \
 <rdf:RDF xmlns:rdf=\"http://www.w3.org/1999/02/22-rdf-syntax-ns#\">\n  \
 <rdf:Description rdf:about=\"\" xmlns:dc=\"http://purl.org/dc/elements/1.1/\" \
-xmlns:xmp=\"http://ns.adobe.com/xap/1.0/\" xmlns:pdf=\"http://ns.adobe.com/pdf/1.3/\">\n   \
+xmlns:xmp=\"http://ns.adobe.com/xap/1.0/\" xmlns:pdf=\"http://ns.adobe.com/pdf/1.3/\" \
+xmlns:pdfaid=\"http://www.aiim.org/pdfa/ns/id/\">\n   \
+<pdfaid:part>3</pdfaid:part>\n   <pdfaid:conformance>B</pdfaid:conformance>\n   \
 <dc:format>application/pdf</dc:format>\n   \
 <dc:language><rdf:Bag><rdf:li>{language}</rdf:li></rdf:Bag></dc:language>\n   \
 <dc:title><rdf:Alt><rdf:li xml:lang=\"x-default\">{title}</rdf:li></rdf:Alt></dc:title>\n   \

@@ -51,11 +51,9 @@ pub fn write(pages: &[Page], info: &DocumentInfo) -> Result<Vec<u8>, Error> {
     let tree = document.new_object_id();
     let mut structure = structure::Structure::default();
     let mut page_ids = Vec::new();
-    let mut fingerprint = info.fingerprint();
     for (index, page) in pages.iter().enumerate() {
         let id = document.new_object_id();
         let content = content::page(page, &fonts, &mut grids, &mut document, structure.page(id))?;
-        fingerprint.extend_from_slice(&content.bytes);
         let stream = document.add_object(objects::compressed(dictionary! {}, &content.bytes)?);
         let (width, height) = page.paper.size();
         let object = dictionary! {
@@ -74,8 +72,6 @@ pub fn write(pages: &[Page], info: &DocumentInfo) -> Result<Vec<u8>, Error> {
     let pages_object = dictionary! { "Type" => "Pages", "Count" => kids.len() as i64, "Kids" => kids };
     document.objects.insert(tree, pages_object.into());
     let structure_root = structure.finish(&mut document);
-    info::finish(&mut document, tree, structure_root, info, &fingerprint)?;
-    let mut bytes = Vec::with_capacity(96 * 1024);
-    document.save_modern(&mut bytes).map_err(|error| Error::Document(error.to_string()))?;
-    Ok(bytes)
+    info::finish(&mut document, tree, structure_root, info)?;
+    info::save(&mut document)
 }
