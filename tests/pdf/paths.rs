@@ -13,6 +13,10 @@ pub struct Path {
     pub width: f64,
     /// Line cap and join, as PDF numbers them (1 and 1 are round).
     pub cap_and_join: (i64, i64),
+    /// Red, green, blue from 0 to 1.
+    pub colour: [f64; 3],
+    /// Whether it is drawn in dashes.
+    pub dashed: bool,
 }
 
 type Matrix = [f64; 6];
@@ -29,18 +33,26 @@ struct State {
     width: f64,
     cap: i64,
     join: i64,
+    colour: [f64; 3],
+    dashed: bool,
 }
 
 /// Every path stroked on the first page.
 pub fn stroked(bytes: &[u8]) -> Vec<Path> {
+    stroked_on(bytes, 0)
+}
+
+/// Every path stroked on page `index`, counting from 0.
+pub fn stroked_on(bytes: &[u8], index: usize) -> Vec<Path> {
     let document = Document::load_mem(bytes).expect("the file can be read back");
-    let id = document.page_iter().next().expect("a page");
+    let id = document.page_iter().nth(index).expect("the page");
     let page = document.get_dictionary(id).expect("the page's dictionary");
     let media: Vec<f64> =
         page.get(b"MediaBox").and_then(Object::as_array).expect("a media box").iter().map(number).collect();
     let resources = page.get_deref(b"Resources", &document).and_then(Object::as_dict).expect("resources");
     let mut found = Vec::new();
-    let state = State { matrix: [1.0, 0.0, 0.0, 1.0, 0.0, 0.0], width: 1.0, cap: 0, join: 0 };
+    let matrix = [1.0, 0.0, 0.0, 1.0, 0.0, 0.0];
+    let state = State { matrix, width: 1.0, cap: 0, join: 0, colour: [0.0; 3], dashed: false };
     walk(&document, &document.get_page_content(id), resources, state, &mut found);
     let height = media[3] * MM;
     for path in &mut found {
@@ -84,13 +96,25 @@ fn walk(
             "w" => state.width = number(&operands[0]),
             "J" => state.cap = number(&operands[0]) as i64,
             "j" => state.join = number(&operands[0]) as i64,
+            "RG" => {
+                let values: Vec<f64> = operands.iter().map(number).collect();
+                state.colour = values.try_into().expect("three numbers");
+            }
+            "d" => state.dashed = !operands[0].as_array().expect("dashes").is_empty(),
             "m" => open.push(vec![place(&state)]),
             "l" => open.last_mut().expect("a started path").push(place(&state)),
             "S" | "B" => {
                 let [a, b, c, d, ..] = state.matrix;
                 let width = state.width * (a * d - b * c).abs().sqrt() * MM;
                 let cap_and_join = (state.cap, state.join);
-                found.extend(open.drain(..).map(|points| Path { points, width, cap_and_join }));
+                let State { colour, dashed, .. } = state;
+                found.extend(open.drain(..).map(|points| Path {
+                    points,
+                    width,
+                    cap_and_join,
+                    colour,
+                    dashed,
+                }));
             }
             "Do" => {
                 let name = operands[0].as_name().expect("a name");
@@ -100,7 +124,9 @@ fn walk(
                 let inner = form.decompressed_content().expect("its content");
                 walk(document, &inner, resources, state.clone(), found);
             }
-            _ => {}
+            "BDC" | "BMC" | "EMC" | "BT" | "ET" | "Tf" | "Tm" | "Tj" | "rg" | "re" | "f" => {}
+            other => panic!("operator {other} is none that a page needs"),
         }
     }
+    assert!(saved.is_empty() && open.is_empty());
 }

@@ -1,6 +1,7 @@
 //! True scale, measured on the produced file: vertices read back from the content stream, and the
 //! independent checker that lies beside the project.
 
+use crate::pdf::paths::{Path, stroked_on};
 use crate::support::sheets::{UNFILTERED, case_by_hand, case_of};
 use crate::support::{TempDir, project, shared};
 use leadsheet::case::{Case, Settings};
@@ -8,8 +9,6 @@ use leadsheet::pdf::{self, DocumentInfo};
 use leadsheet::recording::Lead;
 use leadsheet::sheet::{Layout, Paper, SheetOptions, compose};
 use leadsheet::units::PaperSpeed;
-use lopdf::Document;
-use lopdf::content::Content;
 use std::process::Command;
 
 fn written(case: &Case, layout: &str, options: &SheetOptions) -> Vec<u8> {
@@ -25,26 +24,10 @@ fn written(case: &Case, layout: &str, options: &SheetOptions) -> Vec<u8> {
     pdf::write(&pages, &info).unwrap_or_else(|error| panic!("{error}"))
 }
 
-/// Every stroked line of a page's own content, in mm from its lower left corner.
-fn lines(bytes: &[u8], page: u32) -> Vec<Vec<(f64, f64)>> {
-    let document = Document::load_mem(bytes).expect("a PDF");
-    let id = document.get_pages()[&page];
-    let content = Content::decode(&document.get_page_content(id)).expect("operators");
-    let (mut lines, mut current, mut scale) = (Vec::new(), Vec::new(), 1.0);
-    for operation in content.operations {
-        let number = |index: usize| f64::from(operation.operands[index].as_float().expect("a number"));
-        match operation.operator.as_str() {
-            "cm" => scale = number(0) * 25.4 / 72.0,
-            "m" => current.push(vec![(number(0) * scale, number(1) * scale)]),
-            "l" => {
-                let point = (number(0) * scale, number(1) * scale);
-                current.last_mut().expect("a line begins with m").push(point);
-            }
-            "S" => lines.append(&mut current),
-            _ => {}
-        }
-    }
-    lines
+/// Every stroked line of a page, in mm, y up.
+fn lines(bytes: &[u8], page: usize) -> Vec<Vec<(f64, f64)>> {
+    let upwards = |path: Path| path.points.into_iter().map(|(x, y)| (x, -y)).collect();
+    stroked_on(bytes, page - 1).into_iter().map(upwards).collect()
 }
 
 /// Leads in the order in which the standard layout draws them, with the second they start at.
