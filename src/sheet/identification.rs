@@ -5,6 +5,7 @@ use super::given::{Sheet, plain};
 use super::layout::Area;
 use super::{ComposeError, Element, Role, Shape};
 use crate::case::CAUTION;
+use crate::lettering;
 use crate::recording::{Age, StartTime};
 
 /// High cuts up to this one change J points and voltages (1582 adults; 40 Hz instead of 150 Hz).
@@ -66,6 +67,20 @@ pub(super) fn cut_short(sheet: &Sheet) -> Result<Vec<Field>, ComposeError> {
         }
     }
     Ok(cut)
+}
+
+/// What the faces can't draw of the fields and the remarks: where, and which characters.
+pub(super) fn undrawable(sheet: &Sheet) -> Vec<(&'static str, Vec<char>)> {
+    let fields = fields(sheet).into_iter().flatten();
+    let mut texts: Vec<(&'static str, String)> =
+        fields.filter_map(|field| Some((field.label, field.value?))).collect();
+    texts.push(("Remarks", sheet.case.recording.occasion.remarks.concat()));
+    texts.push(("File name", sheet.case.recording.source.file.clone()));
+    texts
+        .into_iter()
+        .map(|(label, text)| (label, lettering::printable(&text).1))
+        .filter(|(_, characters)| !characters.is_empty())
+        .collect()
 }
 
 /// Identification and alerts.

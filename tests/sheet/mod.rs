@@ -4,5 +4,6 @@ mod arrangement;
 mod geometry;
 mod golden;
 mod layout;
+mod names;
 mod parts;
 mod scale;

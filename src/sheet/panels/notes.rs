@@ -107,6 +107,12 @@ fn all(sheet: &Sheet, halved: &[String]) -> Result<Vec<Note>, ComposeError> {
             "age {years}: RP cut-offs, rate, PR and QRS limits come from adults"
         )));
     }
+    for (place, characters) in identification::undrawable(sheet) {
+        notes.push(Note::caution(format!(
+            "{place}: shown as � where there is no glyph: {}",
+            codes(&characters)
+        )));
+    }
     notes.push(Note::information(shown(sheet)));
     notes.extend(leads(sheet));
     notes.extend(sheet.case.analysis.findings.tachycardias.iter().filter_map(tachycardia));
@@ -129,6 +135,17 @@ fn all(sheet: &Sheet, halved: &[String]) -> Result<Vec<Note>, ComposeError> {
     }
     notes.sort_by_key(|note| std::cmp::Reverse(note.weight));
     Ok(notes)
+}
+
+/// The first of these characters, as Unicode numbers them.
+fn codes(characters: &[char]) -> String {
+    const FIRST: usize = 8;
+    let mut codes: Vec<String> =
+        characters.iter().take(FIRST).map(|character| format!("U+{:04X}", u32::from(*character))).collect();
+    if characters.len() > FIRST {
+        codes.push(format!("and {} more", characters.len() - FIRST));
+    }
+    codes.join(" ")
 }
 
 /// Remarks in one text, a semicolon between those that end without a stop.
