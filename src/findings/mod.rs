@@ -2,8 +2,13 @@
 //!
 //! A suspicion here can't say "confirmed": that word is a reader's.
 
+mod background;
+mod candidate;
+mod evidence;
 mod gate;
+mod retrograde;
 mod search;
+mod window;
 
 pub use gate::{BROAD, FEWEST_BEATS, FEWEST_LEADS, LARGEST_NOISE_UV, SLOWEST};
 pub use search::{
@@ -14,7 +19,6 @@ pub use search::{
 use crate::average::RepresentativeBeat;
 use crate::beats::{Beats, Channels};
 use crate::measure::Measurements;
-use crate::recording::PerLead;
 
 /// What is searched.
 #[derive(Clone, Copy, Debug)]
@@ -34,17 +38,7 @@ pub fn search(subject: &Subject, sinus: Option<(&RepresentativeBeat, &Measuremen
     let _ = sinus;
     let retrograde_p = match gate::passed(subject) {
         Err(why) => Search::NotDone(why),
-        Ok(gate) => Search::Done(Box::new(SearchDone {
-            suspected: Vec::new(),
-            p_before_qrs: PBefore::None,
-            rp: None,
-            rp_expected_error: None,
-            rp_class: None,
-            rp_per_lead: PerLead::default(),
-            polarity: PerLead::default(),
-            p_axis: None,
-            gate,
-        })),
+        Ok(gate) => Search::Done(Box::new(retrograde::search(subject, gate))),
     };
     Findings { retrograde_p, tachycardias: Vec::new(), observations: Vec::new() }
 }
