@@ -4,6 +4,7 @@ mod architecture;
 mod batch;
 mod cli;
 mod demo;
+mod findings;
 mod input;
 mod measure;
 mod pdf;

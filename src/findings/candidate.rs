@@ -10,9 +10,6 @@ const DURATIONS: [f64; 4] = [55.0, 67.0, 80.0, 95.0];
 const PEAKS: [f64; 3] = [0.38, 0.50, 0.62];
 /// A candidate that keeps less than this part of its energy beside the background can't be told from it.
 const SEPARABLE: f64 = 0.10;
-/// Distance of the spline's knots.
-const KNOT: Seconds = Seconds::literal(0.075);
-
 /// A wave that was fitted: one shape, its own amplitude in each lead.
 #[derive(Clone, Debug)]
 pub(super) struct Fit {
@@ -24,6 +21,8 @@ pub(super) struct Fit {
     pub amplitudes: Vec<f64>,
     /// What the leads hold beside the background without it over what they hold with it, less one.
     pub gain: f64,
+    /// What is left of the signals beside background and wave.
+    pub rest: f64,
     /// The shape beside the background, weighted.
     pub shape: Vec<f64>,
 }
@@ -38,20 +37,21 @@ pub(super) struct Prepared {
 }
 
 impl Prepared {
-    pub fn of(window: &Window) -> Self {
+    /// `slopes` tells where the signals are steep; `knot` is the distance of the spline's knots.
+    pub fn of(window: &Window, slopes: &Window, knot: Seconds) -> Self {
         let length = window.len();
         // Near the QRS a small error of time is a large one of potential: such samples count little.
         let weights: Vec<f64> = (0..length)
             .map(|sample| {
                 let (before, after) = (sample.saturating_sub(1), (sample + 1).min(length - 1));
                 let square: f64 =
-                    window.signals.iter().map(|signal| (signal[after] - signal[before]).powi(2)).sum();
+                    slopes.signals.iter().map(|signal| (signal[after] - signal[before]).powi(2)).sum();
                 let slope = (square / window.signals.len() as f64).sqrt() / ((after - before).max(1) as f64);
                 // 2 ms of slope against 8 µV.
                 0.008 / (0.008f64.powi(2) + (0.5 * slope).powi(2)).sqrt()
             })
             .collect();
-        let background = Background::new(length, KNOT / STEP, &weights);
+        let background = Background::new(length, knot / STEP, &weights);
         let residuals = window
             .signals
             .iter()
@@ -62,7 +62,7 @@ impl Prepared {
             })
             .collect();
         // A lead with a large T explains itself badly.
-        let lead_weights = window
+        let lead_weights = slopes
             .signals
             .iter()
             .map(|signal| {
@@ -76,6 +76,14 @@ impl Prepared {
         Self { background, weights, lead_weights, residuals }
     }
 
+    /// What the independent leads hold beside the background, without any wave.
+    pub fn without(&self, window: &Window) -> f64 {
+        let energy = |index: usize| {
+            self.lead_weights[index].powi(2) * dot(&self.residuals[index], &self.residuals[index])
+        };
+        window.independent().into_iter().map(energy).sum()
+    }
+
     /// A signal of the window's length, weighted, its background removed.
     pub fn residual(&self, signal: &[f64]) -> Vec<f64> {
         let mut weighted: Vec<f64> = signal.iter().zip(&self.weights).map(|(x, w)| x * w).collect();
@@ -87,10 +95,7 @@ impl Prepared {
 /// All candidates that a retrograde P may be, best first.
 pub(super) fn fits(window: &Window, prepared: &Prepared) -> Vec<Fit> {
     let independent = window.independent();
-    let energy = |index: usize| {
-        prepared.lead_weights[index].powi(2) * dot(&prepared.residuals[index], &prepared.residuals[index])
-    };
-    let without: f64 = independent.iter().map(|&index| energy(index)).sum();
+    let without = prepared.without(window);
     let mut found = Vec::new();
     for duration in DURATIONS {
         let width = duration / STEP.ms();
@@ -120,6 +125,7 @@ pub(super) fn fits(window: &Window, prepared: &Prepared) -> Vec<Fit> {
                     duration: STEP * width,
                     amplitudes,
                     gain,
+                    rest: without - explained,
                     shape,
                 });
             }

@@ -11,7 +11,15 @@ use super::window::{STEP, Window, thinned};
 const SHOWS: f64 = 0.5;
 
 /// Asks each averaged beat for the wave that the average shows.
-pub(super) fn count(subject: &Subject, window: &Window, prepared: &Prepared, fit: &Fit) -> Evidence {
+/// What was taken from the average, the sinus beat if there is one, is taken from each beat: `searched` is
+/// `window` less that.
+pub(super) fn count(
+    subject: &Subject,
+    window: &Window,
+    searched: &Window,
+    prepared: &Prepared,
+    fit: &Fit,
+) -> Evidence {
     let mut evidence = Evidence { showing: 0, examined: 0 };
     let Some(beat) = subject.representative else { return evidence };
     let rate = beat.rate;
@@ -32,10 +40,12 @@ pub(super) fn count(subject: &Subject, window: &Window, prepared: &Prepared, fit
             let part = signal.and_then(|signal| {
                 thinned(&subject.channels.signals[signal], start, rate.samples(STEP), window.len())
             });
-            let Some(part) = part else {
+            let Some(mut part) = part else {
                 whole = false;
                 break;
             };
+            let taken = window.signals[place].iter().zip(&searched.signals[place]);
+            part.iter_mut().zip(taken).for_each(|(value, (whole, rest))| *value -= whole - rest);
             let own = dot(&prepared.residual(&part), &fit.shape) / energy;
             along += own * fit.amplitudes[place] * prepared.lead_weights[place].powi(2);
         }

@@ -4,6 +4,7 @@
 
 mod background;
 mod candidate;
+mod comparison;
 mod evidence;
 mod gate;
 mod retrograde;
@@ -35,10 +36,34 @@ pub struct Subject<'a> {
 
 /// Searches a recording, against the same patient's sinus beat and its marks where there are any.
 pub fn search(subject: &Subject, sinus: Option<(&RepresentativeBeat, &Measurements)>) -> Findings {
-    let _ = sinus;
     let retrograde_p = match gate::passed(subject) {
         Err(why) => Search::NotDone(why),
-        Ok(gate) => Search::Done(Box::new(retrograde::search(subject, gate))),
+        Ok(gate) => Search::Done(Box::new(retrograde::search(subject, sinus, gate))),
     };
-    Findings { retrograde_p, tachycardias: Vec::new(), observations: Vec::new() }
+    let mut observations = Vec::new();
+    if matches!(&retrograde_p, Search::Done(done) if sinus.is_some() && !done.compared) {
+        observations.push(Observation {
+            what: "the sinus recording was not compared: a P stands before each QRS, its QRS is not that of the \
+                   tachycardia, or leads are missing"
+                .to_owned(),
+            leads: Vec::new(),
+            value: None,
+            evidence: None,
+        });
+    }
+    // A recording that passes the gate is one regular tachycardia from its first beat to its last.
+    let tachycardias = match (&retrograde_p, subject.measurements.ventricular_rate.value()) {
+        (Search::Done(_), Some(rate)) => vec![Tachycardia {
+            start: None,
+            end: None,
+            rate,
+            premature_p: None,
+            coupling: None,
+            pr_before: None,
+            first_pr: None,
+            ends_with: None,
+        }],
+        _ => Vec::new(),
+    };
+    Findings { retrograde_p, tachycardias, observations }
 }

@@ -29,6 +29,8 @@ pub enum Search {
 pub struct SearchDone {
     /// Suspected signs, strongest first.
     pub suspected: Vec<Suspected>,
+    /// Whether the same patient's sinus beat was taken from it.
+    pub compared: bool,
     /// Whether a P stands before each QRS.
     pub p_before_qrs: PBefore,
     /// Onset of the suspected P after QRS onset; `None` when nothing is suspected or the onset lies inside the QRS.

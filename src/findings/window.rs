@@ -10,6 +10,7 @@ use crate::units::Seconds;
 pub(super) const STEP: Seconds = Seconds::literal(0.004);
 
 /// The stretch in the leads that are there.
+#[derive(Clone, Debug)]
 pub(super) struct Window {
     pub leads: Vec<Lead>,
     /// Per lead, in mV.

@@ -224,7 +224,7 @@ fn retrograde(case: &Case) -> RetrogradeOut {
     let mut out = RetrogradeOut {
         search: "not done",
         why_not: None,
-        sinus_recording: case.sinus.as_ref().map(|sinus| sinus.recording.source.file.clone()),
+        sinus_recording: None,
         findings: Vec::new(),
         rp_per_lead_ms: Default::default(),
         v1_minus_iii_ms: None,
@@ -244,6 +244,8 @@ fn retrograde(case: &Case) -> RetrogradeOut {
     };
     let per_lead: &PerLead<Option<Seconds>> = &done.rp_per_lead;
     out.search = "done";
+    out.sinus_recording =
+        case.sinus.as_ref().filter(|_| done.compared).map(|sinus| sinus.recording.source.file.clone());
     out.findings = done.suspected.iter().map(finding).collect();
     out.rp_per_lead_ms = per_lead.iter().filter_map(|(lead, rp)| Some((LeadKey(lead), ms((*rp)?)))).collect();
     out.v1_minus_iii_ms =

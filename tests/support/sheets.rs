@@ -149,6 +149,7 @@ fn analysis(recording: &Recording) -> Analysis {
     };
     let findings = Findings {
         retrograde_p: Search::Done(Box::new(SearchDone {
+            compared: false,
             suspected: vec![
                 suspected(Sign::PInStSegment, &[Lead::V1, Lead::III], (0.120, 0.180), -0.08, false),
                 suspected(Sign::TerminalS, &[Lead::II], (0.085, 0.110), -0.05, true),
