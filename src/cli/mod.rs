@@ -1,6 +1,6 @@
 //! The command line: the only room with arguments, the terminal, the clock and the environment.
 //!
-//! Arguments as typed ([`args`]) become checked values, then work, then an exit status: 0 when all
+//! Arguments as typed become checked values, then work, then an exit status: 0 when all
 //! was done, 1 when something could not be, 2 when the arguments don't make sense.
 
 mod args;
