@@ -88,14 +88,31 @@ fn description(words: &str) -> Vec<u8> {
     tag
 }
 
-/// The sRGB transfer curve in 256 steps (IEC 61966-2-1).
+/// The sRGB transfer curve in 256 steps (IEC 61966-2-1). No step lies so near to a half that another
+/// machine's `powf` could round it elsewhere.
 fn curve() -> Vec<u8> {
     let mut tag = b"curv\0\0\0\0".to_vec();
     tag.extend_from_slice(&256_u32.to_be_bytes());
     for step in 0..256 {
-        let encoded = f64::from(step) / 255.0;
-        let linear = if encoded <= 0.04045 { encoded / 12.92 } else { ((encoded + 0.055) / 1.055).powf(2.4) };
-        tag.extend_from_slice(&((linear * 65535.0).round() as u16).to_be_bytes());
+        tag.extend_from_slice(&(linear(step).round() as u16).to_be_bytes());
     }
     tag
+}
+
+/// Of 65535.
+fn linear(step: u16) -> f64 {
+    let encoded = f64::from(step) / 255.0;
+    let linear = if encoded <= 0.04045 { encoded / 12.92 } else { ((encoded + 0.055) / 1.055).powf(2.4) };
+    linear * 65535.0
+}
+
+#[cfg(test)]
+mod tests {
+    #[test]
+    fn no_step_of_the_curve_is_near_a_rounding_tie() {
+        for step in 0..256 {
+            let part = super::linear(step).fract();
+            assert!((part - 0.5).abs() > 1e-3, "step {step}: {part}");
+        }
+    }
 }

@@ -11,7 +11,7 @@ pub(super) fn real(value: f64) -> Object {
     Object::Real(value as f32)
 }
 
-/// On a sheet's content, level 4 takes 2.2 ms for 79.4 KB; 6 takes 5.4 ms for 77.9, 9 takes 18 for 76.9.
+/// A sheet's content takes 2.2 ms; level 6 takes 5.4 ms and saves 2 %, level 9 takes 18 ms and saves 3 %.
 const LEVEL: Compression = Compression::new(4);
 
 /// A stream, packed once, here.
