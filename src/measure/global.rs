@@ -90,6 +90,24 @@ impl Intervals {
         Self { p_duration: none(), pr: none(), qrs: none(), qt: none() }
     }
 
+    /// The marks of the representative beat, set apart by the intervals as printed, so that a caliper laid
+    /// on them reads what the table says.
+    pub fn drawn_on(&self, mut marks: BeatMarks) -> BeatMarks {
+        let Some(onset) = marks.qrs.onset else { return marks };
+        if let Some(qrs) = self.qrs.value() {
+            marks.qrs.offset = onset + qrs;
+        }
+        if let (Some(p), Some(pr), Some(duration)) = (&mut marks.p, self.pr.value(), self.p_duration.value())
+        {
+            p.onset = Some(onset - pr);
+            p.offset = onset - pr + duration;
+        }
+        if let (Some(t), Some(qt)) = (&mut marks.t, self.qt.value()) {
+            t.offset = onset + qt;
+        }
+        marks
+    }
+
     /// From the marks of the dominant class; `no_p` is the reason when it has no P.
     pub fn of(marked: &Marked, no_p: &Reason) -> Self {
         let shape = marked.shape();

@@ -53,7 +53,7 @@ pub fn measure(
         _ => false,
     };
     let axes = axes(dominant);
-    let marks = dominant.map(|marked| global::beat(marked, None, Seconds::ZERO, true));
+    let marks = dominant.map(|marked| intervals.drawn_on(global::beat(marked, None, Seconds::ZERO, true)));
     Measurements {
         ventricular_rate: rate,
         qtc_bazett: qtc::measured(&intervals.qt, &rr, stable, bazett),
