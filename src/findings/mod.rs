@@ -5,6 +5,7 @@
 mod background;
 mod candidate;
 mod comparison;
+mod episodes;
 mod evidence;
 mod gate;
 mod retrograde;
@@ -51,19 +52,7 @@ pub fn search(subject: &Subject, sinus: Option<(&RepresentativeBeat, &Measuremen
             evidence: None,
         });
     }
-    // A recording that passes the gate is one regular tachycardia from its first beat to its last.
-    let tachycardias = match (&retrograde_p, subject.measurements.ventricular_rate.value()) {
-        (Search::Done(_), Some(rate)) => vec![Tachycardia {
-            start: None,
-            end: None,
-            rate,
-            premature_p: None,
-            coupling: None,
-            pr_before: None,
-            first_pr: None,
-            ends_with: None,
-        }],
-        _ => Vec::new(),
-    };
+    let tachycardias = episodes::find(subject);
+    observations.extend(tachycardias.iter().filter_map(episodes::observed));
     Findings { retrograde_p, tachycardias, observations }
 }
