@@ -1,174 +1,230 @@
-//! Candidates for a retrograde P, and how much of the signals each explains.
+//! A retrograde P as it might be: a raised cosine in time, a dipole over the leads.
+//!
+//! Each candidate is weighed against the background alone by the ratio of their likelihoods, averaged over the
+//! potentials that a P may have. Candidates agree on an onset with a spread; that spread is its uncertainty.
 
-use super::background::{Background, dot};
-use super::window::{STEP, Window};
-use crate::recording::Lead;
-use crate::units::Seconds;
+use super::background::Background;
+use super::dipole::{Expected, row};
+use super::linear::{cholesky, dot, inverse, log_determinant, solve};
+use super::window::{Curves, Window};
+use std::f64::consts::PI;
 
-/// Durations tried, in ms, and where in the wave its peak lies.
-const DURATIONS: [f64; 4] = [55.0, 67.0, 80.0, 95.0];
-const PEAKS: [f64; 3] = [0.38, 0.50, 0.62];
-/// A candidate that keeps less than this part of its energy beside the background can't be told from it.
-const SEPARABLE: f64 = 0.10;
-/// A wave that was fitted: one shape, its own amplitude in each lead.
-#[derive(Clone, Debug)]
-pub(super) struct Fit {
-    /// Onset after QRS onset.
-    pub onset: Seconds,
-    /// Its duration.
-    pub duration: Seconds,
-    /// Amplitude in each lead of the window, in mV.
-    pub amplitudes: Vec<f64>,
-    /// What the leads hold beside the background without it over what they hold with it, less one.
-    pub gain: f64,
-    /// What is left of the signals beside background and wave.
+/// Durations, in ms, and places of the peak, as a part of the duration.
+const DURATIONS: [f64; 3] = [58.0, 70.0, 84.0];
+const PEAKS: [f64; 3] = [0.4, 0.5, 0.6];
+/// Step of the onset, in ms.
+const STEP: f64 = 4.0;
+/// The onset lies at least so long before the next QRS, in ms.
+const BEFORE_NEXT: f64 = 80.0;
+/// The earliest onset, in ms from QRS onset.
+pub(super) const EARLIEST: f64 = 20.0;
+/// How much of a P may lie before the window, in ms.
+const HIDDEN: f64 = 40.0;
+/// Onsets this near to the best, in ms, are of the same P.
+const SAME: f64 = 40.0;
+
+/// What a P may look like.
+#[derive(Clone, Copy, Debug)]
+pub(super) struct Atrial {
+    /// Its dipole.
+    pub dipole: Expected,
+    /// Standard deviation in each lead of what is no dipole, in mV.
     pub rest: f64,
-    /// The shape beside the background, weighted.
-    pub shape: Vec<f64>,
 }
 
-/// The window made ready: weighted, the background removed.
-pub(super) struct Prepared {
-    pub background: Background,
-    pub weights: Vec<f64>,
-    /// Weight of each lead.
-    pub lead_weights: Vec<f64>,
-    residuals: Vec<Vec<f64>>,
+/// A time course: zero before its onset and after its duration, 1 at its peak.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub(super) struct Course {
+    pub onset: f64,
+    pub duration: f64,
+    pub peak: f64,
 }
 
-impl Prepared {
-    /// `slopes` tells where the signals are steep; `knot` is the distance of the spline's knots.
-    pub fn of(window: &Window, slopes: &Window, knot: Seconds) -> Self {
-        let length = window.len();
-        // Near the QRS a small error of time is a large one of potential: such samples count little.
-        let weights: Vec<f64> = (0..length)
-            .map(|sample| {
-                let (before, after) = (sample.saturating_sub(1), (sample + 1).min(length - 1));
-                let square: f64 =
-                    slopes.signals.iter().map(|signal| (signal[after] - signal[before]).powi(2)).sum();
-                let slope = (square / window.signals.len() as f64).sqrt() / ((after - before).max(1) as f64);
-                // 2 ms of slope against 8 µV.
-                0.008 / (0.008f64.powi(2) + (0.5 * slope).powi(2)).sqrt()
-            })
-            .collect();
-        let background = Background::new(length, knot / STEP, &weights);
-        let residuals = window
-            .signals
-            .iter()
-            .map(|signal| {
-                let mut weighted: Vec<f64> = signal.iter().zip(&weights).map(|(x, w)| x * w).collect();
-                background.remove(&mut weighted);
-                weighted
-            })
-            .collect();
-        // A lead with a large T explains itself badly.
-        let lead_weights = slopes
-            .signals
-            .iter()
-            .map(|signal| {
-                let (low, high) =
-                    signal.iter().fold((f64::INFINITY, f64::NEG_INFINITY), |(low, high), &value| {
-                        (low.min(value), high.max(value))
-                    });
-                1.0 / (1.0 + (3.0 * (high - low)).powi(2)).sqrt()
-            })
-            .collect();
-        Self { background, weights, lead_weights, residuals }
+/// A course in components, with what its weights sum to in each mode.
+pub(super) struct Template {
+    pub course: Course,
+    components: Vec<f64>,
+    energy: Vec<f64>,
+}
+
+/// The outcome over all candidates.
+#[derive(Clone, Debug)]
+pub(super) struct Posterior {
+    /// Logarithm of the likelihood ratio against the background, averaged over the candidates.
+    pub evidence: f64,
+    /// Mean onset, in ms from QRS onset.
+    pub onset: f64,
+    /// Its standard deviation by the model's own account, in ms.
+    pub deviation: f64,
+    /// The best candidate.
+    pub course: Course,
+    /// Its potentials at the peak, in the order of the leads, in mV.
+    pub potentials: Vec<f64>,
+}
+
+impl Course {
+    pub fn at(&self, time: f64) -> f64 {
+        let part = (time - self.onset) / self.duration;
+        if part <= 0.0 || part >= 1.0 {
+            return 0.0;
+        }
+        let turn = if part < self.peak { part / self.peak } else { (1.0 - part) / (1.0 - self.peak) };
+        (1.0 - (PI * turn).cos()) / 2.0
     }
 
-    /// What the independent leads hold beside the background, without any wave.
-    pub fn without(&self, window: &Window) -> f64 {
-        let energy = |index: usize| {
-            self.lead_weights[index].powi(2) * dot(&self.residuals[index], &self.residuals[index])
-        };
-        window.independent().into_iter().map(energy).sum()
-    }
-
-    /// A signal of the window's length, weighted, its background removed.
-    pub fn residual(&self, signal: &[f64]) -> Vec<f64> {
-        let mut weighted: Vec<f64> = signal.iter().zip(&self.weights).map(|(x, w)| x * w).collect();
-        self.background.remove(&mut weighted);
-        weighted
+    /// Its components, from the grid times inside its span.
+    pub fn turned(&self, window: &Window, background: &Background) -> Vec<f64> {
+        let first = window.times.partition_point(|time| *time <= self.onset);
+        let run = window.times[first..].iter().take_while(|time| **time < self.onset + self.duration);
+        background.turned(first, run.map(|time| self.at(*time)))
     }
 }
 
-/// All candidates that a retrograde P may be, best first.
-pub(super) fn fits(window: &Window, prepared: &Prepared) -> Vec<Fit> {
-    let independent = window.independent();
-    let without = prepared.without(window);
-    let mut found = Vec::new();
+/// All candidates over a cycle of `rr` ms; `fine` is off for a first look.
+pub(super) fn templates(window: &Window, background: &Background, rr: f64, fine: bool) -> Vec<Template> {
+    let earliest = EARLIEST.max(window.times.first().map_or(0.0, |time| time - HIDDEN));
+    let step = if fine { STEP } else { 2.0 * STEP };
+    let count = (((rr - BEFORE_NEXT - earliest) / step).floor().max(-1.0) + 1.0) as usize;
+    let mut templates = Vec::new();
     for duration in DURATIONS {
-        let width = duration / STEP.ms();
-        let last = (window.len() as f64 - width).floor().max(0.0) as usize;
         for peak in PEAKS {
-            for onset in 0..=last {
-                let mut shape = raised_cosine(window.len(), onset as f64, width, peak);
-                let whole: f64 = shape.iter().zip(&prepared.weights).map(|(x, w)| (x * w).powi(2)).sum();
-                shape.iter_mut().zip(&prepared.weights).for_each(|(x, w)| *x *= w);
-                prepared.background.remove(&mut shape);
-                let rest = dot(&shape, &shape);
-                if whole <= 0.0 || rest < SEPARABLE * whole {
-                    continue;
-                }
-                let amplitudes: Vec<f64> =
-                    prepared.residuals.iter().map(|residual| dot(residual, &shape) / rest).collect();
-                if !retrograde(window, &amplitudes) {
-                    continue;
-                }
-                let explained: f64 = independent
-                    .iter()
-                    .map(|&index| prepared.lead_weights[index].powi(2) * amplitudes[index].powi(2) * rest)
-                    .sum();
-                let gain = explained / (without - explained).max(1e-9);
-                found.push(Fit {
-                    onset: window.time_of(onset as f64),
-                    duration: STEP * width,
-                    amplitudes,
-                    gain,
-                    rest: without - explained,
-                    shape,
-                });
+            if !fine && (duration, peak) != (DURATIONS[1], PEAKS[1]) {
+                continue;
+            }
+            for index in 0..count {
+                let course = Course { onset: earliest + index as f64 * step, duration, peak };
+                let components = course.turned(window, background);
+                let energy = energies(&components, &components, background);
+                templates.push(Template { course, components, energy });
             }
         }
     }
-    found.sort_by(|a, b| b.gain.total_cmp(&a.gain));
-    found
+    templates
 }
 
-/// A raised cosine of height 1 whose flanks meet at `peak` of its width.
-fn raised_cosine(length: usize, onset: f64, width: f64, peak: f64) -> Vec<f64> {
-    (0..length)
-        .map(|sample| {
-            let place = (sample as f64 - onset) / width;
-            if !(0.0..=1.0).contains(&place) {
-                return 0.0;
+/// Weighted products of two courses, per mode.
+pub(super) fn energies(a: &[f64], b: &[f64], background: &Background) -> Vec<f64> {
+    let mut sums = vec![0.0; background.modes.len()];
+    for ((a, b), precision) in a.iter().zip(b).zip(&background.precision) {
+        for (sum, precision) in sums.iter_mut().zip(precision) {
+            *sum += a * b * precision;
+        }
+    }
+    sums
+}
+
+/// Weighted products of a course with the beat, per mode.
+pub(super) fn products(course: &[f64], beat: &[Vec<f64>], background: &Background) -> Vec<f64> {
+    let mut sums = vec![0.0; background.modes.len()];
+    for ((value, row), precision) in course.iter().zip(beat).zip(&background.precision) {
+        for ((sum, own), precision) in sums.iter_mut().zip(row).zip(precision) {
+            *sum += value * own * precision;
+        }
+    }
+    sums
+}
+
+/// Weighs all candidates; `None` when there are none.
+pub(super) fn weigh(
+    templates: &[Template],
+    beat: &[Vec<f64>],
+    background: &Background,
+    curves: &Curves,
+    atrial: &Atrial,
+) -> Option<Posterior> {
+    let prior = Prior::of(background, curves, atrial)?;
+    let weighed: Vec<(f64, Vec<f64>)> = templates
+        .iter()
+        .map(|template| prior.ratio(&template.energy, products(&template.components, beat, background)))
+        .collect();
+    let (best, highest) = weighed
+        .iter()
+        .enumerate()
+        .map(|(index, (ratio, _))| (index, *ratio))
+        .max_by(|a, b| a.1.total_cmp(&b.1))?;
+    let likelihoods: Vec<f64> = weighed.iter().map(|(ratio, _)| (ratio - highest).exp()).collect();
+    let all: f64 = likelihoods.iter().sum();
+    let near = |template: &Template| (template.course.onset - templates[best].course.onset).abs() < SAME;
+    let (mut sum, mut mean, mut square) = (0.0, 0.0, 0.0);
+    for (template, weight) in templates.iter().zip(&likelihoods).filter(|(template, _)| near(template)) {
+        let onset = template.course.onset;
+        sum += weight;
+        mean += weight * onset;
+        square += weight * onset * onset;
+    }
+    mean /= sum;
+    let modes = &weighed[best].1;
+    let potentials = (0..curves.leads.len())
+        .map(|lead| background.modes.iter().zip(modes).map(|(mode, value)| mode[lead] * value).sum())
+        .collect();
+    Some(Posterior {
+        evidence: highest + (all / templates.len() as f64).ln(),
+        onset: mean,
+        deviation: (square / sum - mean * mean).max(0.0).sqrt(),
+        course: templates[best].course,
+        potentials,
+    })
+}
+
+/// The potentials expected of a P, in modes.
+struct Prior {
+    mean: Vec<f64>,
+    precision: Vec<f64>,
+    /// Precision times mean.
+    pull: Vec<f64>,
+    /// What the prior alone adds to the logarithm of the ratio.
+    constant: f64,
+}
+
+impl Prior {
+    fn of(background: &Background, curves: &Curves, atrial: &Atrial) -> Option<Self> {
+        let leads = curves.leads.len();
+        let rows: Vec<[f64; 3]> = background
+            .modes
+            .iter()
+            .map(|mode| {
+                let mut sum = [0.0; 3];
+                for (share, lead) in mode.iter().zip(&curves.leads) {
+                    for (slot, component) in sum.iter_mut().zip(row(*lead)) {
+                        *slot += share * component;
+                    }
+                }
+                sum
+            })
+            .collect();
+        let Expected { mean, deviation } = atrial.dipole;
+        let mut covariance = vec![0.0; leads * leads];
+        for a in 0..leads {
+            for b in 0..leads {
+                let dipole: f64 =
+                    (0..3).map(|axis| rows[a][axis] * rows[b][axis] * deviation[axis].powi(2)).sum();
+                covariance[a * leads + b] = dipole + if a == b { atrial.rest.powi(2) } else { 0.0 };
             }
-            let phase =
-                if place < peak { place / peak / 2.0 } else { 0.5 + (place - peak) / (1.0 - peak) / 2.0 };
-            (1.0 - (2.0 * std::f64::consts::PI * phase).cos()) / 2.0
-        })
-        .collect()
-}
+        }
+        let precision = inverse(&covariance, leads)?;
+        cholesky(&mut covariance, leads)?;
+        let mean: Vec<f64> = rows.iter().map(|row| dot(row, &mean)).collect();
+        let pull: Vec<f64> = precision.chunks_exact(leads).map(|row| dot(row, &mean)).collect();
+        let constant = -0.5 * dot(&mean, &pull) - 0.5 * log_determinant(&covariance, leads);
+        Some(Self { mean, precision, pull, constant })
+    }
 
-/// Whether the amplitudes are those of atria activated from below over the septum: down in II, III and
-/// aVF, up in aVR and aVL, not down in V1 (common practice); in mV.
-fn retrograde(window: &Window, amplitudes: &[f64]) -> bool {
-    let of = |lead: Lead| window.leads.iter().position(|own| *own == lead).map(|index| amplitudes[index]);
-    let all = |test: bool, lead: Option<f64>| lead.is_none() || test;
-    let avf = of(Lead::AVF).or(of(Lead::II)).unwrap_or(0.0);
-    let check = |lead: Lead, rule: fn(f64, f64) -> bool| {
-        let value = of(lead);
-        all(value.is_some_and(|value| rule(value, avf.abs())), value)
-    };
-    avf < -0.030
-        && check(Lead::II, |value, _| value < -0.020)
-        && check(Lead::III, |value, _| value < -0.020)
-        && check(Lead::AVR, |value, _| value > 0.0)
-        && check(Lead::AVL, |value, _| value > 0.0)
-        && check(Lead::I, |value, avf| value.abs() < 0.6 * avf)
-        && check(Lead::V1, |value, _| value > -0.010)
-        && check(Lead::V2, |value, avf| value > -0.6 * avf)
-        && check(Lead::V3, |value, avf| value > -0.6 * avf)
-        && check(Lead::V5, |value, avf| value.abs() < avf)
-        && check(Lead::V6, |value, avf| value.abs() < 0.9 * avf)
+    /// The logarithm of the likelihood ratio and the most likely potentials.
+    fn ratio(&self, energy: &[f64], mut products: Vec<f64>) -> (f64, Vec<f64>) {
+        let leads = energy.len();
+        let mut matrix = self.precision.clone();
+        for (mode, energy) in energy.iter().enumerate() {
+            matrix[mode * leads + mode] += energy;
+        }
+        if cholesky(&mut matrix, leads).is_none() {
+            return (f64::NEG_INFINITY, self.mean.clone());
+        }
+        for (product, pull) in products.iter_mut().zip(&self.pull) {
+            *product += pull;
+        }
+        let mut solution = products.clone();
+        solve(&matrix, leads, &mut solution);
+        let ratio = 0.5 * dot(&products, &solution) + self.constant - 0.5 * log_determinant(&matrix, leads);
+        (ratio, solution)
+    }
 }

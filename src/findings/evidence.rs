@@ -1,58 +1,90 @@
 //! Beats showing of beats examined.
 
-use super::Subject;
-use super::background::dot;
-use super::candidate::{Fit, Prepared};
+use super::candidate::Course;
 use super::search::Evidence;
-use super::window::{STEP, Window, thinned};
+use crate::average::RepresentativeBeat;
+use crate::beats::{Beats, Channels};
+use crate::recording::Lead;
 
-/// A beat shows the wave when its own fit along the wave's lead pattern is at least this part of the
-/// average's (own choice: half, so that noise alone must be as large as half the wave to hide or to feign it).
+/// A beat shows the P when it holds at least this part of the average's (own choice: half, so that noise must be
+/// as large as half the P to hide or to feign it).
 const SHOWS: f64 = 0.5;
+/// What lies beside the P, in ms, is looked at too, so that a level or a tilt isn't taken for it.
+const BESIDE: f64 = 20.0;
 
-/// Asks each averaged beat for the wave that the average shows.
-/// What was taken from the average, the sinus beat if there is one, is taken from each beat: `searched` is
-/// `window` less that.
+/// A P as the average shows it.
+pub(super) struct Wave<'a> {
+    /// In ms from QRS onset.
+    pub course: Course,
+    pub leads: &'a [Lead],
+    /// Per lead, in mV.
+    pub potentials: &'a [f64],
+    /// QRS onset in ms from the fiducial.
+    pub qrs_onset: f64,
+}
+
+/// Asks each averaged beat for the P.
 pub(super) fn count(
-    subject: &Subject,
-    window: &Window,
-    searched: &Window,
-    prepared: &Prepared,
-    fit: &Fit,
+    channels: &Channels,
+    beats: &Beats,
+    average: &RepresentativeBeat,
+    wave: &Wave,
 ) -> Evidence {
-    let mut evidence = Evidence { showing: 0, examined: 0 };
-    let Some(beat) = subject.representative else { return evidence };
-    let rate = beat.rate;
-    let pattern: f64 = fit
-        .amplitudes
-        .iter()
-        .zip(&prepared.lead_weights)
-        .map(|(amplitude, weight)| (amplitude * weight).powi(2))
-        .sum();
-    let energy = dot(&fit.shape, &fit.shape);
-    for &index in &beat.used {
-        let fiducial = subject.beats.all[index].fiducial.0 as f64;
-        let start = fiducial + rate.samples(window.onset + window.start);
-        let mut along = 0.0;
-        let mut whole = true;
-        for (place, lead) in window.leads.iter().enumerate() {
-            let signal = subject.channels.names.iter().position(|name| *name == Some(*lead));
-            let part = signal.and_then(|signal| {
-                thinned(&subject.channels.signals[signal], start, rate.samples(STEP), window.len())
-            });
-            let Some(mut part) = part else {
-                whole = false;
-                break;
-            };
-            let taken = window.signals[place].iter().zip(&searched.signals[place]);
-            part.iter_mut().zip(taken).for_each(|(value, (whole, rest))| *value -= whole - rest);
-            let own = dot(&prepared.residual(&part), &fit.shape) / energy;
-            along += own * fit.amplitudes[place] * prepared.lead_weights[place].powi(2);
-        }
-        if whole {
-            evidence.examined += 1;
-            evidence.showing += usize::from(along >= SHOWS * pattern);
+    let parts: Vec<f64> =
+        average.used.iter().filter_map(|&beat| part(channels, beats, average, wave, beat)).collect();
+    Evidence { showing: parts.iter().filter(|part| **part >= SHOWS).count(), examined: parts.len() }
+}
+
+/// How much of the average's P one beat holds: 1 for as much, 0 for none; `None` where the recording ends.
+///
+/// What the beat has beside the average without the P is projected on the P, over all leads at once; in each lead
+/// a level and a tilt of its own are taken off both first.
+pub(super) fn part(
+    channels: &Channels,
+    beats: &Beats,
+    average: &RepresentativeBeat,
+    wave: &Wave,
+    beat: usize,
+) -> Option<f64> {
+    let per_ms = average.rate.get() / 1000.0;
+    let from = ((wave.qrs_onset + wave.course.onset - BESIDE) * per_ms).round() as isize;
+    let count = ((wave.course.duration + 2.0 * BESIDE) * per_ms).round() as usize;
+    let fiducial = beats.all.get(beat)?.fiducial.0;
+    let start = fiducial.checked_add_signed(from)?;
+    let in_average = average.fiducial.0.checked_add_signed(from)?;
+    let mut course: Vec<f64> = (0..count)
+        .map(|index| wave.course.at((from + index as isize) as f64 / per_ms - wave.qrs_onset))
+        .collect();
+    level(&mut course);
+    let (mut along, mut whole) = (0.0, 0.0);
+    for (lead, potential) in wave.leads.iter().zip(wave.potentials) {
+        let place = channels.names.iter().position(|name| *name == Some(*lead))?;
+        let own = channels.signals.get(place)?.get(start..start + count)?;
+        let mean = average.lead(*lead)?.get(in_average..in_average + count)?;
+        let mut rest: Vec<f64> = own.iter().zip(mean).map(|(own, mean)| own - mean).collect();
+        level(&mut rest);
+        for (rest, course) in rest.iter().zip(&course) {
+            let wave = potential * course;
+            along += (rest + wave) * wave;
+            whole += wave * wave;
         }
     }
-    evidence
+    (whole > 0.0).then(|| along / whole)
+}
+
+/// Takes off the straight line that fits best.
+fn level(values: &mut [f64]) {
+    let count = values.len() as f64;
+    let middle = (count - 1.0) / 2.0;
+    let mean = values.iter().sum::<f64>() / count;
+    let (mut tilt, mut square) = (0.0, 0.0);
+    for (index, value) in values.iter().enumerate() {
+        let place = index as f64 - middle;
+        tilt += place * value;
+        square += place * place;
+    }
+    let tilt = if square > 0.0 { tilt / square } else { 0.0 };
+    for (index, value) in values.iter_mut().enumerate() {
+        *value -= mean + tilt * (index as f64 - middle);
+    }
 }

@@ -4,15 +4,19 @@
 
 mod background;
 mod candidate;
-mod comparison;
+mod dipole;
 mod episodes;
 mod evidence;
 mod gate;
+mod linear;
+mod ordinary_p;
 mod retrograde;
 mod search;
+mod sinus;
+mod suspicion;
 mod window;
 
-pub use gate::{BROAD, FEWEST_BEATS, FEWEST_LEADS, LARGEST_NOISE_UV, SLOWEST};
+pub use gate::{BROAD, BROAD_MARGIN, FEWEST_BEATS, FEWEST_LEADS, LARGEST_NOISE_UV, SLOWEST};
 pub use search::{
     Evidence, Findings, Observation, PBefore, Polarity, RpClass, Search, SearchDone, Sign, Suspected,
     Tachycardia, WaveAtEnd, WhyNot,
@@ -44,8 +48,8 @@ pub fn search(subject: &Subject, sinus: Option<(&RepresentativeBeat, &Measuremen
     let mut observations = Vec::new();
     if matches!(&retrograde_p, Search::Done(done) if sinus.is_some() && !done.compared) {
         observations.push(Observation {
-            what: "the sinus recording was not compared: a P stands before each QRS, its QRS is not that of the \
-                   tachycardia, or leads are missing"
+            what: "the sinus recording was not compared: its QRS is not that of the tachycardia, its T is \
+                   not marked, or leads are missing"
                 .to_owned(),
             leads: Vec::new(),
             value: None,

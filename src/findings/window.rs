@@ -1,95 +1,104 @@
-//! The stretch from the end of the QRS to the next one, on the representative beat, thinned to 4 ms.
+//! The stretch of the representative beat that is searched, on an even grid of times from QRS onset.
 
-use super::Subject;
+use super::linear::dot;
 use crate::average::RepresentativeBeat;
-use crate::measure::BeatMarks;
 use crate::recording::Lead;
-use crate::units::Seconds;
 
-/// Spacing of the thinned samples.
-pub(super) const STEP: Seconds = Seconds::literal(0.004);
+/// Step of the grid, in ms; longer where the stretch would need more than [`MOST`] steps.
+const STEP: f64 = 4.0;
+const MOST: usize = 80;
+/// Smoothing before the grid is read, standard deviation in ms.
+const SMOOTHING: f64 = 1.5;
 
-/// The stretch in the leads that are there.
-#[derive(Clone, Debug)]
-pub(super) struct Window {
+/// The independent leads of a beat, smoothed, to be read at any time from QRS onset.
+pub(super) struct Curves {
     pub leads: Vec<Lead>,
-    /// Per lead, in mV.
-    pub signals: Vec<Vec<f64>>,
-    /// Time of the first sample after QRS onset.
-    pub start: Seconds,
-    /// QRS onset relative to the fiducial of the beat.
-    pub onset: Seconds,
-    /// QRS duration.
-    pub qrs: Seconds,
-    /// End of T after QRS onset.
-    pub t_end: Option<Seconds>,
+    signals: Vec<Vec<f64>>,
+    /// Root mean square over the leads of the slope, in mV/ms.
+    slope: Vec<f64>,
+    /// Index of QRS onset, with its fraction.
+    onset: f64,
+    per_ms: f64,
+    /// Last time that any beat gives.
+    pub end: f64,
 }
 
-impl Window {
-    /// From `before` ahead of the end of the QRS to `tail` ahead of the next QRS onset; `None` when that is
-    /// too short to hold a P.
-    pub fn of(subject: &Subject, before: Seconds, tail: Seconds) -> Option<Self> {
-        let beat = subject.representative?;
-        let marks: &BeatMarks = subject.measurements.representative.as_ref()?;
-        let rr = subject.measurements.rr.value()?;
-        let onset = marks.qrs.onset?;
-        let qrs = marks.qrs.offset - onset;
-        let start = qrs - before;
-        let count = ((rr - tail - start) / STEP).floor();
-        if count < 25.0 {
-            return None;
+/// One value per lead for each time of a grid.
+#[derive(Clone)]
+pub(super) struct Window {
+    /// In ms from QRS onset.
+    pub times: Vec<f64>,
+    /// Per time, the leads in the order of [`Curves::leads`], in mV.
+    pub values: Vec<Vec<f64>>,
+    pub step: f64,
+}
+
+impl Curves {
+    /// `onset` in ms from the fiducial.
+    pub fn of(beat: &RepresentativeBeat, onset: f64) -> Self {
+        let per_ms = beat.rate.get() / 1000.0;
+        let leads: Vec<Lead> =
+            Lead::INDEPENDENT.into_iter().filter(|lead| beat.lead(*lead).is_some()).collect();
+        let signals: Vec<Vec<f64>> = leads
+            .iter()
+            .filter_map(|lead| beat.lead(*lead))
+            .map(|signal| smooth(signal, SMOOTHING * per_ms))
+            .collect();
+        let length = signals.first().map_or(0, Vec::len);
+        let mut slope = vec![0.0; length];
+        for signal in &signals {
+            for index in 1..length.saturating_sub(1) {
+                slope[index] += ((signal[index + 1] - signal[index - 1]) / 2.0 * per_ms).powi(2);
+            }
         }
-        let leads: Vec<Lead> = beat.names.iter().flatten().copied().collect();
-        let from = onset + start;
-        let signals =
-            leads.iter().filter_map(|&lead| sampled(beat, lead, from, count as usize)).collect::<Vec<_>>();
-        (signals.len() == leads.len()).then(|| Self {
-            leads,
-            signals,
-            start,
-            onset,
-            qrs,
-            t_end: marks.t.map(|t| t.offset - onset),
-        })
+        for value in &mut slope {
+            *value = (*value / signals.len().max(1) as f64).sqrt();
+        }
+        let onset = beat.fiducial.0 as f64 + onset * per_ms;
+        let end = (beat.valid.end as f64 - 2.0 - onset) / per_ms;
+        Self { leads, signals, slope, onset, per_ms, end }
     }
 
-    /// Samples of each signal.
-    pub fn len(&self) -> usize {
-        self.signals.first().map_or(0, Vec::len)
+    /// All leads at a time.
+    pub fn at(&self, time: f64) -> Vec<f64> {
+        self.signals.iter().map(|signal| self.read(signal, time)).collect()
     }
 
-    /// The time of a sample after QRS onset.
-    pub fn time_of(&self, sample: f64) -> Seconds {
-        self.start + STEP * sample
+    /// The slope at a time, over all leads.
+    pub fn slope_at(&self, time: f64) -> f64 {
+        self.read(&self.slope, time)
     }
 
-    /// Places of the leads that carry independent information.
-    pub fn independent(&self) -> Vec<usize> {
-        (0..self.leads.len()).filter(|&index| Lead::INDEPENDENT.contains(&self.leads[index])).collect()
+    fn read(&self, signal: &[f64], time: f64) -> f64 {
+        let last = signal.len().saturating_sub(2);
+        let position = (self.onset + time * self.per_ms).clamp(0.0, last as f64);
+        let (index, part) = (position.floor() as usize, position.fract());
+        let value = |index: usize| signal.get(index).copied().unwrap_or(0.0);
+        value(index) * (1.0 - part) + value(index + 1) * part
+    }
+
+    /// The stretch from one time to another.
+    pub fn window(&self, from: f64, to: f64) -> Window {
+        let to = to.min(self.end);
+        let step = STEP.max((to - from) / MOST as f64);
+        let count = (((to - from) / step).floor().max(0.0) as usize) + 1;
+        let times: Vec<f64> = (0..count).map(|index| from + index as f64 * step).collect();
+        let values = times.iter().map(|time| self.at(*time)).collect();
+        Window { times, values, step }
     }
 }
 
-/// A lead of the beat every 4 ms from `from` (relative to its fiducial), each the mean over 4 ms.
-fn sampled(beat: &RepresentativeBeat, lead: Lead, from: Seconds, count: usize) -> Option<Vec<f64>> {
-    let signal = beat.lead(lead)?;
-    thinned(signal, beat.fiducial.0 as f64 + beat.rate.samples(from), beat.rate.samples(STEP), count)
-}
-
-/// `count` means over `step` samples, centred on `start`, `start + step`, …; `None` outside the signal.
-pub(super) fn thinned(signal: &[f64], start: f64, step: f64, count: usize) -> Option<Vec<f64>> {
-    let half = step / 2.0;
-    let last = start + step * (count.max(1) - 1) as f64 + half;
-    if start - half < 0.0 || last.ceil() as usize >= signal.len() {
-        return None;
-    }
-    Some(
-        (0..count)
-            .map(|index| {
-                let centre = start + step * index as f64;
-                let (low, high) = ((centre - half).round() as usize, (centre + half).round() as usize);
-                let part = &signal[low..=high];
-                part.iter().sum::<f64>() / part.len() as f64
-            })
-            .collect(),
-    )
+/// Gaussian smoothing with a standard deviation in samples.
+fn smooth(signal: &[f64], deviation: f64) -> Vec<f64> {
+    let reach = (3.0 * deviation).ceil().max(1.0) as usize;
+    let mut kernel: Vec<f64> = (0..=2 * reach)
+        .map(|index| (-0.5 * ((index as f64 - reach as f64) / deviation).powi(2)).exp())
+        .collect();
+    let sum: f64 = kernel.iter().sum();
+    kernel.iter_mut().for_each(|value| *value /= sum);
+    let Some((&first, &last)) = signal.first().zip(signal.last()) else { return Vec::new() };
+    let mut padded = vec![first; reach];
+    padded.extend_from_slice(signal);
+    padded.extend(std::iter::repeat_n(last, reach));
+    padded.windows(kernel.len()).map(|window| dot(window, &kernel)).collect()
 }

@@ -3,7 +3,6 @@
 use crate::case::{CAUTION, Case, Entry, table};
 use crate::findings::{Search, Suspected};
 use crate::recording::Weight;
-use crate::units::Seconds;
 use std::fmt::Write;
 
 /// A table of the measurements, the outcome of the search, the notes, the caution.
@@ -32,13 +31,6 @@ pub fn text(case: &Case) -> String {
     }
     out.push('\n');
     search(&mut out, &case.analysis.findings.retrograde_p);
-    for found in &case.analysis.findings.tachycardias {
-        let time = |time: Option<Seconds>, none: &str| {
-            time.map_or(none.to_owned(), |time| format!("{:.2} s", time.get()))
-        };
-        let (start, end) = (time(found.start, "the beginning"), time(found.end, "the end"));
-        let _ = writeln!(out, "Regular tachycardia: {:.0}/min, from {start} to {end}", found.rate.get());
-    }
     for seen in &case.analysis.findings.observations {
         let _ = writeln!(out, "Observed: {}", seen.what);
     }

@@ -75,12 +75,12 @@ impl Wave {
         self.0.iter().map(|bump| bump.onset + bump.duration).fold(f64::NEG_INFINITY, f64::max)
     }
 
-    /// Septum, free wall, base: 90 ms from 0.
+    /// Septum, free wall, base: 100 ms from 0, with the slow first and last moments that real ones have.
     pub fn qrs() -> Self {
         Self::of(&[
-            Bump { onset: 0.000, duration: 0.034, peak: 0.55, vector: [-0.16, -0.05, -0.34] },
-            Bump { onset: 0.012, duration: 0.054, peak: 0.52, vector: [0.98, 0.86, 0.02] },
-            Bump { onset: 0.040, duration: 0.050, peak: 0.40, vector: [-0.16, -0.22, 0.66] },
+            Bump { onset: 0.000, duration: 0.054, peak: 0.66, vector: [-0.14, -0.04, -0.32] },
+            Bump { onset: 0.021, duration: 0.054, peak: 0.54, vector: [0.98, 0.86, 0.02] },
+            Bump { onset: 0.048, duration: 0.052, peak: 0.40, vector: [-0.16, -0.20, 0.66] },
         ])
     }
 

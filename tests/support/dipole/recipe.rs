@@ -44,7 +44,7 @@ impl Recipe {
         rr_scatter: 0.010,
         pr: Some(0.160),
         rp: None,
-        qrs: 0.090,
+        qrs: 0.092,
         qt: Some(0.380),
         p_gain: 1.0,
         retrograde_gain: 1.0,
@@ -67,9 +67,9 @@ impl Recipe {
 
     /// A beat with its QRS onset at `at`.
     pub fn beat(&self, at: f64) -> Beat {
-        let qrs = Wave::qrs().stretched(self.qrs / 0.090);
-        // The ST segment rises into T from 20 ms behind the QRS on.
-        let t_onset = self.qrs + 0.020;
+        let qrs = Wave::qrs().stretched(self.qrs / 0.100);
+        // The ST segment rises into T from 15 ms behind the QRS on.
+        let t_onset = self.qrs + 0.015;
         Beat {
             p: self.pr.map(|pr| (at - pr, Wave::sinus_p().scaled(self.p_gain))),
             qrs: Some((at, qrs)),
