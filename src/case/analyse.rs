@@ -3,7 +3,7 @@
 use super::{Analysis, Case, Settings, Sinus};
 use crate::beats::{self, Beats, Channels};
 use crate::condition::{self, ChainError, MEASUREMENT};
-use crate::recording::Recording;
+use crate::recording::{Recording, Subject};
 use crate::units::Seconds;
 use crate::{average, findings, measure};
 use std::fmt;
@@ -16,6 +16,8 @@ pub const SHORTEST: Seconds = Seconds::literal(2.5);
 pub enum AnalyseError {
     /// Shorter than [`SHORTEST`].
     TooShort(Seconds),
+    /// The sinus recording is of another subject: name, number or birth date differ.
+    OtherSubject(&'static str),
     /// A filter that the sampling rate doesn't allow.
     Chain(ChainError),
 }
@@ -28,6 +30,10 @@ impl fmt::Display for AnalyseError {
                 "expected at least {} s, found {:.2} s; record longer, or use `leadsheet export`",
                 SHORTEST.get(),
                 found.get()
+            ),
+            AnalyseError::OtherSubject(what) => write!(
+                f,
+                "the {what} in the sinus recording is another one; compare recordings of one patient only"
             ),
             AnalyseError::Chain(error) => write!(f, "{error}"),
         }
@@ -52,15 +58,35 @@ impl Case {
         sinus: Option<Recording>,
         settings: Settings,
     ) -> Result<Self, AnalyseError> {
+        if let Some(what) = sinus.as_ref().and_then(|sinus| contradiction(&recording.subject, &sinus.subject))
+        {
+            return Err(AnalyseError::OtherSubject(what));
+        }
         let sinus = sinus
-            .map(|recording| {
-                let analysis = analysis(&recording, None)?;
-                Ok::<_, AnalyseError>(Box::new(Sinus { recording, analysis }))
+            .map(|sinus| {
+                let analysis = analysis(&sinus, None)?;
+                Ok::<_, AnalyseError>(Box::new(Sinus { recording: sinus, analysis }))
             })
             .transpose()?;
         let analysis = analysis(&recording, sinus.as_deref())?;
         let display = condition::apply(&recording, settings.chain(recording.rate))?;
         Ok(Self { recording, settings, display, analysis, sinus })
+    }
+}
+
+/// What two subjects state and state differently.
+fn contradiction(one: &Subject, other: &Subject) -> Option<&'static str> {
+    fn differ<T: PartialEq>(one: &Option<T>, other: &Option<T>) -> bool {
+        one.is_some() && other.is_some() && one != other
+    }
+    if differ(&one.id, &other.id) {
+        Some("patient number")
+    } else if differ(&one.birth_date, &other.birth_date) {
+        Some("birth date")
+    } else if differ(&one.name, &other.name) {
+        Some("name")
+    } else {
+        None
     }
 }
 

@@ -144,3 +144,13 @@ fn a_sinus_rhythm_is_not_searched_and_the_reason_has_its_number() {
     assert!(matches!(why, WhyNot::NotTachycardia(rate) if rate.get() < 100.0), "{why}");
     assert!(why.to_string().contains("100/min"));
 }
+
+#[test]
+fn a_sinus_recording_of_another_patient_is_refused() {
+    let demo = project().join("demo-data");
+    let mut other = recording(&demo.join("sinus.hea"));
+    other.subject.id = Some("INVENTED-0002".to_owned());
+    let error = Case::analyse(recording(&demo.join("tachycardia.hea")), Some(other), Settings::default())
+        .expect_err("another patient");
+    assert!(error.to_string().contains("patient number"), "{error}");
+}

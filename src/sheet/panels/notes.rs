@@ -118,7 +118,8 @@ fn all(sheet: &Sheet, halved: &[String]) -> Result<Vec<Note>, ComposeError> {
     notes.extend(sheet.case.analysis.findings.tachycardias.iter().filter_map(tachycardia));
     notes.extend(rp_class(&sheet.case.analysis.findings.retrograde_p));
     notes.extend(sheet.case.analysis.findings.observations.iter().map(observation));
-    if let Some(sinus) = &sheet.case.sinus {
+    let compared = matches!(&sheet.case.analysis.findings.retrograde_p, Search::Done(done) if done.compared);
+    if let Some(sinus) = sheet.case.sinus.as_ref().filter(|_| compared) {
         let hash: String = sinus.recording.source.sha256.chars().take(12).collect();
         notes.push(Note::information(format!(
             "compared with the sinus recording {}, SHA-256 {hash}",
