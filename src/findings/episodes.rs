@@ -1,6 +1,8 @@
 //! Regular narrow-complex tachycardias inside a longer recording: where they start and end.
 
-use super::gate::{BROAD, SLOWEST};
+use super::ending;
+use super::gate::{BROAD, BROAD_MARGIN, SLOWEST};
+use super::premature::{self, Start};
 use super::{Observation, Subject, Tachycardia};
 use crate::beats::{ClassId, median};
 use crate::units::{PerMinute, Seconds};
@@ -12,7 +14,7 @@ const STEADY: f64 = 0.12;
 
 /// Every run of intervals that are fast and steady, in beats of one class or of like ones.
 pub(super) fn find(subject: &Subject) -> Vec<Tachycardia> {
-    if subject.measurements.qrs.value().is_none_or(|qrs| qrs >= BROAD) {
+    if subject.measurements.qrs.value().is_none_or(|qrs| qrs >= BROAD + BROAD_MARGIN) {
         return Vec::new();
     }
     let beats = &subject.beats.all;
@@ -50,15 +52,19 @@ fn tachycardia(subject: &Subject, first: usize, last: usize, run: &[f64]) -> Opt
         Some(at + subject.measurements.representative.as_ref()?.qrs.onset?)
     };
     let mean = run.iter().sum::<f64>() / run.len() as f64;
+    let starts = first > 0;
+    let ends = last + 1 < subject.beats.all.len();
+    let sinus = if starts { premature::before(subject, first) } else { None };
+    let start = sinus.as_ref().map_or_else(Start::default, |sinus| premature::start(subject, first, sinus));
     Some(Tachycardia {
-        start: if first > 0 { onset(first) } else { None },
-        end: if last + 1 < subject.beats.all.len() { onset(last) } else { None },
+        start: if starts { onset(first) } else { None },
+        end: if ends { onset(last) } else { None },
         rate: PerMinute::new(60.0 / mean)?,
-        premature_p: None,
-        coupling: None,
-        pr_before: None,
-        first_pr: None,
-        ends_with: None,
+        premature_p: start.premature_p,
+        coupling: start.coupling,
+        pr_before: start.pr_before,
+        first_pr: start.first_pr,
+        ends_with: sinus.filter(|_| ends).and_then(|sinus| ending::last_wave(subject, first, last, &sinus)),
     })
 }
 

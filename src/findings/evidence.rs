@@ -73,7 +73,7 @@ pub(super) fn part(
 }
 
 /// Takes off the straight line that fits best.
-fn level(values: &mut [f64]) {
+pub(super) fn level(values: &mut [f64]) {
     let count = values.len() as f64;
     let middle = (count - 1.0) / 2.0;
     let mean = values.iter().sum::<f64>() / count;

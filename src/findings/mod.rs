@@ -5,14 +5,17 @@
 mod background;
 mod candidate;
 mod dipole;
+mod ending;
 mod episodes;
 mod evidence;
 mod gate;
 mod linear;
 mod ordinary_p;
+mod premature;
 mod retrograde;
 mod search;
 mod sinus;
+mod stretch;
 mod suspicion;
 mod window;
 

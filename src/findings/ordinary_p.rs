@@ -4,6 +4,7 @@ use super::background::Background;
 use super::candidate::{Course, energies, products};
 use super::dipole::{Expected, row};
 use super::linear::{cholesky, dot, log_determinant, solve};
+use super::sinus::Overlay;
 use super::window::{Curves, Window};
 
 /// The two halves of an ordinary P: down and to the front, then down, left and to the back (own choice after
@@ -20,6 +21,9 @@ const HALF: f64 = 0.64;
 const SHORTEST_PR: f64 = 100.0;
 const LONGEST_PR: f64 = 210.0;
 const STEP: f64 = 8.0;
+
+/// Standard deviation of the gain of a sinus P from one recording to the next, about 1 (own choice).
+const GAIN_DEVIATION: f64 = 0.3;
 
 /// An ordinary P found before the QRS.
 #[derive(Clone, Copy, Debug)]
@@ -64,6 +68,52 @@ pub(super) fn weigh(
             found.push((ratio(&halves, beat, background, &rows), pr));
         }
     }
+    mean(&found)
+}
+
+/// Weighs the P of the same patient's sinus beat, earlier or later and larger or smaller; `None` when it shows none.
+pub(super) fn weigh_known(
+    window: &Window,
+    beat: &[Vec<f64>],
+    background: &Background,
+    overlay: &Overlay,
+    rr: f64,
+) -> Option<OrdinaryP> {
+    let (length, wave) = overlay.p()?;
+    let mut found: Vec<(f64, f64)> = Vec::new();
+    let count = ((LONGEST_PR - SHORTEST_PR) / STEP).floor() as usize + 1;
+    for index in 0..count {
+        let pr = LONGEST_PR - index as f64 * STEP;
+        // Conduction is not much quicker than in sinus rhythm, or the P would be another one.
+        if pr < 0.6 * length || rr - pr < window.times[0] {
+            continue;
+        }
+        let values: Vec<Vec<f64>> =
+            window
+                .times
+                .iter()
+                .map(|time| time - (rr - pr))
+                .map(|time| {
+                    if (0.0..length).contains(&time) { wave(time) } else { vec![0.0; background.modes.len()] }
+                })
+                .collect();
+        let components = background.turned_values(&values);
+        let (mut energy, mut product) = (0.0, 0.0);
+        for ((wave, own), precision) in components.iter().zip(beat).zip(&background.precision) {
+            for ((wave, own), precision) in wave.iter().zip(own).zip(precision) {
+                energy += wave * wave * precision;
+                product += wave * own * precision;
+            }
+        }
+        let precision = GAIN_DEVIATION.powi(-2);
+        let (matrix, right) = (energy + precision, product + precision);
+        found.push((0.5 * right * right / matrix - 0.5 * precision - 0.5 * (matrix / precision).ln(), pr));
+    }
+    mean(&found)
+}
+
+/// The candidates' mean likelihood ratio, as a logarithm, and the best one's PR.
+fn mean(found: &[(f64, f64)]) -> Option<OrdinaryP> {
     let (highest, pr) = found.iter().copied().max_by(|a, b| a.0.total_cmp(&b.0))?;
     let mean = found.iter().map(|(ratio, _)| (ratio - highest).exp()).sum::<f64>() / found.len() as f64;
     Some(OrdinaryP { evidence: highest + mean.ln(), pr })

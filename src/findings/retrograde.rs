@@ -17,7 +17,7 @@ use crate::units::Seconds;
 
 /// All numbers of a search.
 #[derive(Clone, Copy, Debug)]
-pub struct Model {
+pub(super) struct Model {
     pub smoothness: Smoothness,
     pub atrial: Atrial,
     /// Begin of the window, in ms: from QRS end without a sinus beat, from QRS onset with one.
@@ -49,16 +49,16 @@ pub(super) const ALONE: Model = Model {
 /// Against a sinus beat.
 pub(super) const COMPARED: Model = Model {
     smoothness: Smoothness {
-        slow: 0.02,
+        slow: 0.028,
         slow_scale: 30.0,
-        quick: 0.008,
-        quick_scale: 18.0,
-        sideways: 0.05,
-        noise: 0.008,
-        jitter: 3.0,
+        quick: 0.0077,
+        quick_scale: 9.7,
+        sideways: 0.16,
+        noise: 0.0044,
+        jitter: 0.82,
     },
-    atrial: Atrial { dipole: DIPOLE, rest: 0.008 },
-    start: 16.0,
+    atrial: Atrial { dipole: DIPOLE, rest: 0.007 },
+    start: 15.0,
 };
 
 /// What a beat is, beside its curves.
@@ -100,7 +100,10 @@ pub(super) fn weigh(
     let beat = background.turned_values(&values);
     let templates = candidate::templates(&window, &background, cycle.rr, true);
     let retrograde = candidate::weigh(&templates, &beat, &background, curves, &model.atrial)?;
-    let ordinary = ordinary_p::weigh(&window, &beat, &background, curves, cycle.rr);
+    let any = ordinary_p::weigh(&window, &beat, &background, curves, cycle.rr);
+    let known =
+        overlay.and_then(|sinus| ordinary_p::weigh_known(&window, &beat, &background, sinus, cycle.rr));
+    let ordinary = any.into_iter().chain(known).max_by(|a, b| a.evidence.total_cmp(&b.evidence));
     Some(Weighed { retrograde, ordinary })
 }
 
@@ -174,7 +177,7 @@ pub(super) fn search(
     done.compared = overlay.is_some();
     let model = if done.compared { &COMPARED } else { &ALONE };
     let Some(weighed) = weigh(&curves, cycle, overlay.as_ref(), model) else { return done };
-    if suspicion::likely(&weighed) {
+    if suspicion::likely(&weighed, rr, done.compared) {
         let given = Given {
             subject,
             curves: &curves,
@@ -195,7 +198,7 @@ pub(super) fn search(
 }
 
 /// QRS onset is marked this much late, in ms, measured against readers on LUDB beats.
-const LATE: f64 = 2.0;
+pub(super) const LATE: f64 = 2.0;
 
 fn median_rr(subject: &Subject) -> Option<f64> {
     match &subject.beats.rhythm {

@@ -26,6 +26,8 @@ pub(super) struct Overlay<'a> {
     /// QRS end and T end of the sinus beat, in ms from its QRS onset.
     qrs_end: f64,
     t_end: f64,
+    /// Its P onset, before 0.
+    p: Option<f64>,
     /// Behind this time the sinus beat is not read: the next P or the end.
     last: f64,
     /// Correlation over the first part of the QRS.
@@ -37,8 +39,10 @@ pub(super) struct Overlay<'a> {
 pub(super) struct Marks {
     pub qrs_end: f64,
     pub t_end: f64,
-    /// Onset of the next P.
-    pub next_p: Option<f64>,
+    /// P onset, before 0.
+    pub p: Option<f64>,
+    /// RR.
+    pub rr: f64,
 }
 
 impl Marks {
@@ -49,11 +53,11 @@ impl Marks {
         let marks = measurements.representative.as_ref()?;
         let onset = marks.qrs.onset?;
         let from_onset = |time: crate::units::Seconds| (time - onset).ms() + late;
-        let p = marks.p.as_ref().and_then(|p| p.onset);
         Some(Self {
             qrs_end: from_onset(marks.qrs.offset),
             t_end: from_onset(marks.t.as_ref()?.offset),
-            next_p: p.zip(measurements.rr.value()).map(|(p, rr)| rr.ms() + from_onset(p)),
+            p: marks.p.as_ref().and_then(|p| p.onset).map(from_onset),
+            rr: measurements.rr.value()?.ms(),
         })
     }
 }
@@ -95,9 +99,18 @@ impl<'a> Overlay<'a> {
                 (place, gain.clamp(GAIN.0, GAIN.1))
             })
             .collect();
-        let next_p = marks.next_p.unwrap_or(f64::INFINITY);
+        let next_p = marks.p.map_or(f64::INFINITY, |p| marks.rr + p);
         let last = (marks.t_end + 60.0).min(next_p - 10.0).min(sinus.end - 25.0);
-        Some(Self { sinus, leads, shift, qrs_end: marks.qrs_end, t_end: marks.t_end, last, likeness })
+        Some(Self {
+            sinus,
+            leads,
+            shift,
+            qrs_end: marks.qrs_end,
+            t_end: marks.t_end,
+            p: marks.p,
+            last,
+            likeness,
+        })
     }
 
     /// The factors by which ST-T may be read faster, so that T still ends near the next QRS.
@@ -109,6 +122,23 @@ impl<'a> Overlay<'a> {
         (0..count)
             .map(move |index| first + step * f64::from(index))
             .filter(move |factor| st_t / factor < latest)
+    }
+
+    /// The sinus beat's own P: its length in ms and, at times from its onset, the potentials over the line from its
+    /// begin to QRS onset. `None` where no P is marked.
+    pub fn p(&self) -> Option<(f64, impl Fn(f64) -> Vec<f64>)> {
+        let onset = self.p?;
+        let read = move |time: f64| {
+            let values = self.sinus.at(time + self.shift);
+            self.leads.iter().map(|(place, gain)| gain * values[*place]).collect::<Vec<f64>>()
+        };
+        let (first, last) = (read(onset - 4.0), read(0.0));
+        let wave = move |time: f64| {
+            let part = (time / -onset).clamp(0.0, 1.0);
+            let line = first.iter().zip(&last).map(|(first, last)| first + part * (last - first));
+            read(onset + time).iter().zip(line).map(|(value, line)| value - line).collect()
+        };
+        Some((-onset, wave))
     }
 
     /// What the tachycardia beat would show at each time without a P.

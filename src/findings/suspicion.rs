@@ -13,8 +13,11 @@ use crate::units::{Millivolts, Seconds};
 /// Logarithms of the odds before looking: a retrograde P, and an ordinary one, against neither (own choice).
 const RETROGRADE: f64 = -1.0;
 const ORDINARY: f64 = -0.5;
-/// From these logarithms of the odds on a P is suspected (own choice: false alarms come first).
-const SUSPECTED: f64 = 0.5;
+/// From this logarithm of the odds on a P is suspected (own choice, where beats without a P of LUDB subjects that
+/// no figure is reported on gave hardly any): for RP below half of RR and above it, where ordinary P waves lie.
+const SUSPECTED: Threshold = Threshold { early: -0.5, late: 0.5 };
+/// The same against a sinus beat.
+const SUSPECTED_COMPARED: Threshold = Threshold { early: -2.0, late: 0.5 };
 /// From this logarithm of the likelihood ratio on an ordinary P is said to stand before each QRS.
 const STANDS_BEFORE: f64 = 3.0;
 /// Least depth in aVF, in mV.
@@ -51,10 +54,17 @@ pub(super) fn ordinary(weighed: &Weighed) -> Option<f64> {
     weighed.ordinary.filter(|p| p.evidence > STANDS_BEFORE).map(|p| p.pr)
 }
 
+struct Threshold {
+    early: f64,
+    late: f64,
+}
+
 /// Whether the beat itself speaks for a retrograde P.
-pub(super) fn likely(weighed: &Weighed) -> bool {
+pub(super) fn likely(weighed: &Weighed, rr: f64, compared: bool) -> bool {
     let rival = weighed.ordinary.map_or(0.0, |p| (p.evidence + ORDINARY).max(0.0));
-    weighed.retrograde.evidence + RETROGRADE - rival > SUSPECTED
+    let odds = weighed.retrograde.evidence + RETROGRADE - rival;
+    let threshold = if compared { SUSPECTED_COMPARED } else { SUSPECTED };
+    odds > if weighed.retrograde.onset < rr / 2.0 { threshold.early } else { threshold.late }
 }
 
 /// Describes the P in `done`, if enough of the beats show it.
