@@ -3,6 +3,8 @@
 use super::{Analysis, Case, Settings, Sinus};
 use crate::beats::{self, Beats, Channels};
 use crate::condition::{self, ChainError, MEASUREMENT};
+use crate::findings::Search;
+use crate::measure::Reason;
 use crate::recording::{Recording, Subject};
 use crate::units::Seconds;
 use crate::{average, findings, measure};
@@ -109,5 +111,9 @@ fn analysis(recording: &Recording, sinus: Option<&Sinus>) -> Result<Analysis, An
     let compared =
         sinus.and_then(|sinus| Some((sinus.analysis.representative.as_ref()?, &sinus.analysis.measurements)));
     let findings = findings::search(&subject, compared);
+    // A wave that is suspected to belong to the beat before gives no PR of the beat behind it.
+    let suspected = matches!(&findings.retrograde_p, Search::Done(done) if !done.suspected.is_empty());
+    let measurements =
+        if suspected { measurements.without_p(&Reason::RetrogradePSuspected) } else { measurements };
     Ok(Analysis { chain: MEASUREMENT, beats, representative, measurements, findings })
 }

@@ -56,6 +56,8 @@ pub enum Reason {
     LeadsDisagree,
     /// Gaps cover what would be measured.
     Gaps,
+    /// What stands before the QRS may be the retrograde P that is suspected.
+    RetrogradePSuspected,
     /// A retrograde P was not looked for, or none is suspected.
     NoRetrogradeP,
 }
@@ -100,6 +102,7 @@ impl fmt::Display for Reason {
             Reason::BelowNoise { noise } => write!(f, "below noise of {:.0} µV", noise.get() * 1000.0),
             Reason::LeadsDisagree => write!(f, "leads disagree"),
             Reason::Gaps => write!(f, "gaps in the recording"),
+            Reason::RetrogradePSuspected => write!(f, "a retrograde P is suspected"),
             Reason::NoRetrogradeP => write!(f, "no retrograde P suspected"),
         }
     }

@@ -1,6 +1,6 @@
 //! All measurements of a recording.
 
-use super::Measured;
+use super::{Measured, Reason};
 use crate::recording::PerLead;
 use crate::units::{Degrees, Millivolts, PerMinute, Seconds};
 
@@ -41,6 +41,26 @@ pub struct Measurements {
     pub amplitudes: PerLead<Option<Amplitudes>>,
     /// RMS noise of each lead between the waves, above 0.5 Hz.
     pub noise: PerLead<Option<Millivolts>>,
+}
+
+impl Measurements {
+    /// The same without any P before the QRS, for `reason`.
+    pub fn without_p(mut self, reason: &Reason) -> Self {
+        self.p_duration = Measured::NotMeasurable(reason.clone());
+        self.pr = Measured::NotMeasurable(reason.clone());
+        self.p_axis = Measured::NotMeasurable(reason.clone());
+        let leads = self.lead_beats.iter_mut().flatten().flatten().map(|lead| &mut lead.marks);
+        for marks in self.beats.iter_mut().chain(&mut self.representative).chain(leads) {
+            marks.p = None;
+        }
+        for lead in self.lead_representative.iter_mut().flatten() {
+            lead.marks.p = None;
+        }
+        for amplitudes in self.amplitudes.iter_mut().flatten() {
+            amplitudes.p = None;
+        }
+        self
+    }
 }
 
 /// One wave's marks.

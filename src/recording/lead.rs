@@ -87,6 +87,11 @@ impl<T> PerLead<T> {
         Lead::ALL.into_iter().zip(&self.0)
     }
 
+    /// The values to change, in standard order.
+    pub fn iter_mut(&mut self) -> impl Iterator<Item = &mut T> {
+        self.0.iter_mut()
+    }
+
     /// The same leads with other values.
     pub fn map<U>(&self, mut value: impl FnMut(Lead, &T) -> U) -> PerLead<U> {
         PerLead::from_fn(|lead| value(lead, &self[lead]))

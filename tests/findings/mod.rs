@@ -154,3 +154,24 @@ fn a_sinus_recording_of_another_patient_is_refused() {
         .expect_err("another patient");
     assert!(error.to_string().contains("patient number"), "{error}");
 }
+
+// Source: by definition, a PR is from a P to the QRS that it leads into.
+#[test]
+fn no_pr_stands_beside_a_suspected_retrograde_p() {
+    let Some(folder) = shared("data/tachycardia") else { return };
+    let suspected: usize = truths(&folder)
+        .par_iter()
+        .map(|(header, _)| {
+            let case = Case::analyse(recording(header), None, Settings::default()).expect("it is analysed");
+            let Search::Done(done) = &case.analysis.findings.retrograde_p else { return 0 };
+            if done.suspected.is_empty() {
+                return 0;
+            }
+            let measurements = &case.analysis.measurements;
+            assert_eq!(measurements.pr.value(), None, "{}", header.display());
+            assert!(measurements.beats.iter().all(|beat| beat.p.is_none()), "{}", header.display());
+            1
+        })
+        .sum();
+    assert!(suspected >= 40, "only {suspected} suspected");
+}
