@@ -68,19 +68,15 @@ fn tachycardia(subject: &Subject, first: usize, last: usize, run: &[f64]) -> Opt
     })
 }
 
-/// One that starts or ends inside the recording, in words; the values of the whole recording then mix it
-/// with what is around it.
+/// What a reader must know of the values beside one that starts or ends inside the recording.
 pub(super) fn observed(found: &Tachycardia) -> Option<Observation> {
-    let span = match (found.start, found.end) {
-        (Some(start), Some(end)) => format!("from {:.1} to {:.1} s", start.get(), end.get()),
-        (Some(start), None) => format!("from {:.1} s to the end", start.get()),
-        (None, Some(end)) => format!("from the beginning to {:.1} s", end.get()),
-        (None, None) => return None,
-    };
+    if found.start.is_none() && found.end.is_none() {
+        return None;
+    }
     Some(Observation {
-        what: format!("regular tachycardia {span}; measurements are of the whole recording"),
+        what: "measurements are of the whole recording, not of the tachycardia alone".to_owned(),
         leads: Vec::new(),
-        value: Some((found.rate.get(), "1/min")),
+        value: None,
         evidence: None,
     })
 }
