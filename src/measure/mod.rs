@@ -170,13 +170,18 @@ fn rate_and_rr(beats: &Beats) -> (Measured<PerMinute>, Measured<Seconds>) {
             return (Measured::NotMeasurable(reason.clone()), Measured::NotMeasurable(reason));
         }
     };
-    match (PerMinute::new(60.0 / mean), Seconds::new(mean)) {
-        (Some(rate), Some(rr)) => (
+    match Seconds::new(mean).and_then(|rr| Some((rate_of(rr)?, rr))) {
+        Some((rate, rr)) => (
             Measured::Value(Reading { value: rate, spread: None }),
             Measured::Value(Reading { value: rr, spread }),
         ),
         _ => (Measured::NotMeasurable(Reason::UnstableRr), Measured::NotMeasurable(Reason::UnstableRr)),
     }
+}
+
+/// 60 s over an RR interval; `None` unless it is above zero.
+pub fn rate_of(rr: Seconds) -> Option<PerMinute> {
+    if rr > Seconds::ZERO { PerMinute::new(60.0 / rr.get()) } else { None }
 }
 
 /// Median change from one RR to the next, over RR.
@@ -217,4 +222,20 @@ fn axes(dominant: Option<&Marked>) -> Axes {
         .as_ref()
         .map_or_else(|| none(Reason::TEndUnreliable), |t| of(t, t.peak - (t.offset - t.peak) * 1.5));
     (p, qrs, t)
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    // Source: common practice at 25 mm/s, 300 over large boxes of 200 ms and 1500 over small ones of 40 ms.
+    #[test]
+    fn rates_agree_with_boxes_counted_on_paper() {
+        let rate = |seconds: f64| rate_of(Seconds::literal(seconds)).unwrap().get();
+        assert!((rate(0.2) - 300.0).abs() < 0.01);
+        assert!((rate(2.0 * 0.2) - 150.0).abs() < 0.01);
+        assert!((rate(2.14 * 0.2) - 140.0).abs() < 0.2);
+        assert!((rate(8.33 * 0.04) - 180.0).abs() < 0.2);
+        assert_eq!(rate_of(Seconds::ZERO), None);
+    }
 }
