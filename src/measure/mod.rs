@@ -27,7 +27,7 @@ pub use qtc::{HIGHEST_RATE, bazett, fridericia};
 use crate::average::RepresentativeBeat;
 use crate::beats::{Beats, Channels, Rhythm};
 use crate::recording::{Lead, PerLead};
-use crate::units::{Degrees, Millivolts, PerMinute, Seconds};
+use crate::units::{Degrees, Millivolts, PerMinute, Seconds, Span, Spans};
 use classes::Marked;
 use global::Intervals;
 
@@ -43,7 +43,7 @@ pub fn measure(
     let rr_change = rr_change(beats);
     let classes = classes::mark_all(channels, beats, representative, rr_change);
     let dominant = classes.first().and_then(Option::as_ref);
-    let (rate, rr) = rate_and_rr(beats);
+    let (rate, rr) = rate_and_rr(beats, &channels.gaps);
     let intervals = match dominant {
         Some(marked) => Intervals::of(marked, &why_no_p(beats, rr_change)),
         None => Intervals::none(&Reason::TooFewBeats { needed: 1, found: 0 }),
@@ -151,24 +151,28 @@ fn noise(marked: &Marked, lead: Lead) -> Option<Millivolts> {
     marked.beat.noise(lead).map(|noise| noise * (marked.beat.used.len() as f64).sqrt())
 }
 
-fn rate_and_rr(beats: &Beats) -> (Measured<PerMinute>, Measured<Seconds>) {
+/// Rate and RR from the intervals that no gap interrupts: a gap may hide beats.
+fn rate_and_rr(beats: &Beats, gaps: &Spans) -> (Measured<PerMinute>, Measured<Seconds>) {
     let intervals: Vec<f64> = beats
         .all
         .windows(2)
-        .map(|pair| beats.rate.duration(pair[1].fiducial.0 - pair[0].fiducial.0).get())
+        .map(|pair| Span { start: pair[0].fiducial.0, end: pair[1].fiducial.0 })
+        .filter(|span| !gaps.touches(*span))
+        .map(|span| beats.rate.duration(span.len()).get())
         .collect();
-    let (mean, spread) = match &beats.rhythm {
-        Rhythm::Regular(range) | Rhythm::Irregular(range) => {
-            let squares: f64 = intervals.iter().map(|rr| (rr - range.mean.get()).powi(2)).sum();
-            (range.mean.get(), Seconds::new((squares / intervals.len() as f64).sqrt()))
+    if intervals.is_empty() {
+        let found = beats.all.len();
+        let reason = if found < 2 { Reason::TooFewBeats { needed: 2, found } } else { Reason::Gaps };
+        return (Measured::NotMeasurable(reason.clone()), Measured::NotMeasurable(reason));
+    }
+    let count = intervals.len() as f64;
+    let mean = intervals.iter().sum::<f64>() / count;
+    let spread = match &beats.rhythm {
+        Rhythm::Regular(_) | Rhythm::Irregular(_) => {
+            let squares: f64 = intervals.iter().map(|rr| (rr - mean).powi(2)).sum();
+            Seconds::new((squares / count).sqrt())
         }
-        Rhythm::Uncertain(_) if !intervals.is_empty() => {
-            (intervals.iter().sum::<f64>() / intervals.len() as f64, None)
-        }
-        Rhythm::Uncertain(_) => {
-            let reason = Reason::TooFewBeats { needed: 2, found: beats.all.len() };
-            return (Measured::NotMeasurable(reason.clone()), Measured::NotMeasurable(reason));
-        }
+        Rhythm::Uncertain(_) => None,
     };
     match Seconds::new(mean).and_then(|rr| Some((rate_of(rr)?, rr))) {
         Some((rate, rr)) => (
@@ -227,6 +231,8 @@ fn axes(dominant: Option<&Marked>) -> Axes {
 #[cfg(test)]
 mod tests {
     use super::*;
+    use crate::beats::{Beat, WhyUncertain};
+    use crate::units::{SampleIndex, SampleRate};
 
     // Source: common practice at 25 mm/s, 300 over large boxes of 200 ms and 1500 over small ones of 40 ms.
     #[test]
@@ -237,5 +243,28 @@ mod tests {
         assert!((rate(2.14 * 0.2) - 140.0).abs() < 0.2);
         assert!((rate(8.33 * 0.04) - 180.0).abs() < 0.2);
         assert_eq!(rate_of(Seconds::ZERO), None);
+    }
+
+    fn beats_at(samples: &[usize], rhythm: Rhythm) -> Beats {
+        let beat = |&fiducial: &usize| Beat {
+            fiducial: SampleIndex(fiducial),
+            class: Beats::DOMINANT,
+            paced: false,
+        };
+        let rate = SampleRate::new(500.0).unwrap();
+        Beats { rate, all: samples.iter().map(beat).collect(), rhythm, spikes: Vec::new() }
+    }
+
+    // Source: construction, one beat a second; the gap hides three.
+    #[test]
+    fn an_interval_over_a_gap_counts_for_no_rate() {
+        let gaps = Spans::from_unordered(vec![Span { start: 900, end: 2400 }]);
+        let beats = beats_at(&[250, 750, 2750, 3250], Rhythm::Uncertain(WhyUncertain::Gaps));
+        let (rate, rr) = rate_and_rr(&beats, &gaps);
+        assert_eq!(rate.value().map(PerMinute::get), Some(60.0));
+        assert_eq!(rr.value().map(Seconds::get), Some(1.0));
+
+        let beats = beats_at(&[750, 2750], Rhythm::Uncertain(WhyUncertain::TooFewBeats(2)));
+        assert!(matches!(rate_and_rr(&beats, &gaps).0, Measured::NotMeasurable(Reason::Gaps)));
     }
 }
