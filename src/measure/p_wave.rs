@@ -17,6 +17,10 @@ pub(super) struct SearchWindow {
     pub to: usize,
 }
 
+/// Below this RR (150/min) a P must have the whole search window behind the end of T (own choice, made
+/// after built tachycardias without a P at 325 to 385 ms were given a PR).
+const CROWDED: Seconds = Seconds::literal(0.400);
+
 /// The search window; `None` when the T wave before leaves no room for a separate P.
 pub(super) fn window(
     shape: &Shape,
@@ -30,9 +34,11 @@ pub(super) fn window(
         .map_or(f64::NEG_INFINITY, |t| previous + (t.core.1 as f64 - shape.fiducial as f64) + shape.ms(16.0));
     let earliest = (qrs.core.0 as f64 - shape.ms(260.0)).max(previous + shape.ms(220.0));
     let from = earliest.max(t_end);
-    // The window is never shorter than 120 ms, but it may not reach back into the T wave's peak.
+    // The window is never shorter than 120 ms, but it may not reach back into the T wave's peak; in a fast
+    // rhythm not into the T wave at all, whose flank would pass for a P.
     let short = to as f64 - shape.ms(120.0);
-    if from > short + shape.ms(70.0) {
+    let into_t = if rr < CROWDED { 0.0 } else { shape.ms(70.0) };
+    if from > short + into_t {
         return None;
     }
     let from = (from.min(short).max(0.0) as usize).max(shape.beat.valid.start);

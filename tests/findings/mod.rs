@@ -175,3 +175,20 @@ fn no_pr_stands_beside_a_suspected_retrograde_p() {
         .sum();
     assert!(suspected >= 40, "only {suspected} suspected");
 }
+
+// Source of the truth: tachycardias built without any P (kind no-p), so no PR can be right.
+#[test]
+fn a_tachycardia_without_any_p_is_given_no_pr() {
+    let Some(folder) = shared("data/tachycardia") else { return };
+    let built: Vec<_> = truths(&folder).into_iter().filter(|(_, truth)| truth["kind"] == "no-p").collect();
+    assert_eq!(built.len(), 30);
+    let given: Vec<_> = built
+        .par_iter()
+        .filter(|(header, _)| {
+            let case = Case::analyse(recording(header), None, Settings::default()).expect("it is analysed");
+            case.analysis.measurements.pr.value().is_some()
+        })
+        .map(|(header, _)| header.clone())
+        .collect();
+    assert!(given.is_empty(), "{given:?}");
+}
