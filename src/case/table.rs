@@ -4,6 +4,7 @@ use super::Case;
 use crate::findings::Search;
 use crate::measure::{Measured, Reason};
 use crate::units::{Degrees, PerMinute, Seconds};
+use std::fmt;
 
 /// One row of the measurement table.
 #[derive(Clone, Debug, PartialEq, Eq)]
@@ -19,15 +20,33 @@ pub struct Row {
 /// What stands in a row.
 #[derive(Clone, Debug, PartialEq, Eq)]
 pub enum Entry {
-    /// A value, rounded, and its spread over the beats (standard deviation) if it has one.
+    /// A value, rounded, and how sure it is if that is known.
     Value {
         /// The number.
         value: String,
-        /// The spread, in the same unit.
-        spread: Option<String>,
+        /// In the same unit.
+        spread: Option<Spread>,
     },
     /// Why there is no value.
     Reason(String),
+}
+
+/// One standard deviation, rounded: of what, must be said beside it.
+#[derive(Clone, Debug, PartialEq, Eq)]
+pub enum Spread {
+    /// Of the values of the single beats.
+    OverBeats(String),
+    /// Of the error to be expected.
+    ExpectedError(String),
+}
+
+impl fmt::Display for Spread {
+    fn fmt(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
+        match self {
+            Spread::OverBeats(number) => write!(f, "± {number}"),
+            Spread::ExpectedError(number) => write!(f, "± {number} expected error"),
+        }
+    }
 }
 
 /// The rows of a case, in the order of the beat: rate, then onset to offset, then axes.
@@ -66,7 +85,7 @@ fn row<T: Copy>(
     let entry = match measured {
         Measured::Value(reading) => Entry::Value {
             value: whole(number(reading.value)),
-            spread: reading.spread.map(|spread| whole(number(spread))),
+            spread: reading.spread.map(|spread| Spread::OverBeats(whole(number(spread)))),
         },
         Measured::NotMeasurable(reason) => Entry::Reason(reason.to_string()),
     };
@@ -78,9 +97,10 @@ fn rp(search: &Search) -> Row {
         quantity: "RP interval",
         unit: "ms",
         entry: match rp_interval(search) {
-            Ok((rp, error)) => {
-                Entry::Value { value: whole(rp.ms()), spread: error.map(|error| whole(error.ms())) }
-            }
+            Ok((rp, error)) => Entry::Value {
+                value: whole(rp.ms()),
+                spread: error.map(|error| Spread::ExpectedError(whole(error.ms()))),
+            },
             Err(reason) => Entry::Reason(reason),
         },
     }

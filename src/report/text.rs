@@ -21,7 +21,7 @@ pub fn text(case: &Case) -> String {
     for row in table(case) {
         let _ = match row.entry {
             Entry::Value { value, spread: Some(spread) } => {
-                writeln!(out, "{:<18}{value:>6} {:<6} ± {spread}", row.quantity, row.unit)
+                writeln!(out, "{:<18}{value:>6} {:<6} {spread}", row.quantity, row.unit)
             }
             Entry::Value { value, spread: None } => {
                 writeln!(out, "{:<18}{value:>6} {}", row.quantity, row.unit)

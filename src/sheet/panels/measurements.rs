@@ -36,7 +36,7 @@ pub(super) fn elements(sheet: &Sheet, area: Area) -> Result<Vec<Element>, Compos
                 cells.push(body.bold().right(at(VALUE), y, value));
                 cells.push(body.left(at(UNIT), y, row.unit));
                 if let Some(spread) = spread {
-                    cells.push(label.left(at(SPREAD), y, &format!("± {spread}")));
+                    cells.push(label.left(at(SPREAD), y, &spread.to_string()));
                 }
             }
             Entry::Reason(reason) => {

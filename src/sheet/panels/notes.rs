@@ -248,9 +248,11 @@ fn tachycardia(found: &Tachycardia) -> Option<Note> {
 fn rp_class(search: &Search) -> Option<Note> {
     let Search::Done(done) = search else { return None };
     let text = match done.rp_class? {
-        RpClass::Short => "RP is shorter than PR",
-        RpClass::Long => "RP is longer than PR",
-        RpClass::AtTheLimit => "RP lies at the limit of the cut-offs or of PR: no class is named",
+        RpClass::Short => "RP is shorter than the time from that P to the next QRS",
+        RpClass::Long => "RP is longer than the time from that P to the next QRS",
+        RpClass::AtTheLimit => {
+            "RP lies at the limit of the cut-offs, or halfway to the next QRS: no class is named"
+        }
     };
     Some(Note::information(text))
 }
