@@ -2,21 +2,11 @@
 //! Source of the data: LUDB 1.0.1, PhysioNet/CinC Challenge 2020–21 excerpts, and recordings built from LUDB.
 
 use crate::support::program::leadsheet;
-use crate::support::{TempDir, shared};
+use crate::support::{TempDir, headers, shared};
 use rayon::prelude::*;
 use serde_json::Value;
 use std::fs;
-use std::path::{Path, PathBuf};
-
-fn headers(folder: &Path) -> Vec<PathBuf> {
-    let mut headers: Vec<PathBuf> = fs::read_dir(folder)
-        .expect("the folder can be read")
-        .map(|entry| entry.expect("an entry").path())
-        .filter(|path| path.extension().is_some_and(|extension| extension == "hea"))
-        .collect();
-    headers.sort();
-    headers
-}
+use std::path::PathBuf;
 
 /// Prints the whole folder in one call and measures each recording; returns the measured documents.
 fn print_and_measure(name: &str, count: usize) -> Option<Vec<(PathBuf, Value)>> {

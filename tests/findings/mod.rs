@@ -1,6 +1,6 @@
 //! What is suspected, on recordings of known truth, and what is not, on real ones.
 
-use crate::support::{project, shared};
+use crate::support::{headers, project, shared};
 use leadsheet::case::{Case, Settings};
 use leadsheet::findings::{PBefore, Search, SearchDone, Sign, WhyNot};
 use leadsheet::recording::Recording;
@@ -118,11 +118,7 @@ fn tachycardias_without_a_retrograde_p_are_not_suspected_and_some_with_one_are()
 fn no_labelled_sinus_tachycardia_flutter_or_fibrillation_is_suspected() {
     let Some(folder) = shared("data/rhythms") else { return };
     let mut examined = 0;
-    for entry in fs::read_dir(folder).expect("readable") {
-        let header = entry.expect("an entry").path();
-        if header.extension().is_none_or(|extension| extension != "hea") {
-            continue;
-        }
+    for header in headers(&folder) {
         let labels = fs::read_to_string(&header).expect("a header");
         if !["427084000", "164889003", "164890007"].iter().any(|code| labels.contains(code)) {
             continue;

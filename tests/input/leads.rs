@@ -13,11 +13,7 @@ fn recording(path: &std::path::Path) -> Recording {
 /// All headers of a folder of the shared data.
 fn headers(folder: &str) -> Vec<PathBuf> {
     let Some(folder) = shared(folder) else { return Vec::new() };
-    let mut paths: Vec<PathBuf> =
-        std::fs::read_dir(folder).expect("the folder").map(|entry| entry.expect("an entry").path()).collect();
-    paths.retain(|path| path.extension().is_some_and(|extension| extension == "hea"));
-    paths.sort();
-    paths
+    crate::support::headers(&folder)
 }
 
 /// A table with a rate of 500/s and these columns, read.

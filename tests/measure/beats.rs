@@ -1,27 +1,17 @@
 //! Beats against manual annotations. Source: LUDB 1.0.1 (per-lead manual marks), MIT-BIH Arrhythmia 1.0.0.
 
 use crate::support::annotations::{BEATS, annotations};
-use crate::support::shared;
+use crate::support::{headers, shared};
 use leadsheet::beats::{Beats, find};
 use leadsheet::condition::{MEASUREMENT, apply};
 use leadsheet::recording::Recording;
 use rayon::prelude::*;
-use std::path::{Path, PathBuf};
+use std::path::Path;
 
 fn beats_of(header: &Path) -> Beats {
     let decoded = leadsheet::input::read(header).unwrap_or_else(|error| panic!("{error}"));
     let recording = Recording::from_decoded(decoded).unwrap_or_else(|refusal| panic!("{refusal:?}"));
     find(&apply(&recording, MEASUREMENT).expect("the measurement chain fits every rate"))
-}
-
-fn records(folder: &Path) -> Vec<PathBuf> {
-    let mut headers: Vec<PathBuf> = std::fs::read_dir(folder)
-        .expect("the folder can be read")
-        .map(|entry| entry.expect("an entry").path())
-        .filter(|path| path.extension().is_some_and(|extension| extension == "hea"))
-        .collect();
-    headers.sort();
-    headers
 }
 
 /// Matches within 150 ms, each once: found, missed, extra.
@@ -42,7 +32,7 @@ fn matched(marked: &[f64], found: &[f64]) -> (usize, usize, usize) {
 #[test]
 fn qrs_are_found_on_all_of_ludb_and_the_rate_is_within_1_per_minute() {
     let Some(folder) = shared("data/ludb") else { return };
-    let totals: Vec<(usize, usize, usize)> = records(&folder)
+    let totals: Vec<(usize, usize, usize)> = headers(&folder)
         .par_iter()
         .map(|header| {
             let beats = beats_of(header);
@@ -75,7 +65,7 @@ fn qrs_are_found_on_all_of_ludb_and_the_rate_is_within_1_per_minute() {
 fn beats_of_half_hour_two_lead_recordings_are_found() {
     let Some(folder) = shared("data/mitdb") else { return };
     let (mut hits, mut missed, mut extra) = (0, 0, 0);
-    for header in records(&folder) {
+    for header in headers(&folder) {
         let found: Vec<f64> =
             beats_of(&header).all.iter().map(|beat| beat.fiducial.0 as f64 / 360.0).collect();
         let marked: Vec<f64> = annotations(&header.with_extension("atr"))

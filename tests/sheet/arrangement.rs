@@ -122,12 +122,7 @@ fn nothing_overlaps_when_everything_is_there_to_be_said() {
 fn nothing_overlaps_on_true_recordings() {
     for folder in ["data/ludb", "data/rhythms", "data/tachycardia", "data/onset"] {
         let Some(folder) = shared(folder) else { continue };
-        let mut headers: Vec<_> = std::fs::read_dir(&folder)
-            .expect("the folder can be read")
-            .map(|entry| entry.expect("an entry").path())
-            .filter(|path| path.extension().is_some_and(|extension| extension == "hea"))
-            .collect();
-        headers.sort();
+        let headers = crate::support::headers(&folder);
         for path in headers.iter().step_by(headers.len() / 5 + 1) {
             check_all(&case_of(path, Settings::default()), &path.display().to_string(), &[25.0]);
         }

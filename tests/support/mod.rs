@@ -28,6 +28,17 @@ pub fn shared(inside: &str) -> Option<PathBuf> {
     None
 }
 
+/// The WFDB headers in a folder, sorted.
+pub fn headers(folder: &Path) -> Vec<PathBuf> {
+    let mut headers: Vec<PathBuf> = std::fs::read_dir(folder)
+        .expect("the folder can be read")
+        .map(|entry| entry.expect("an entry").path())
+        .filter(|path| path.extension().is_some_and(|extension| extension == "hea"))
+        .collect();
+    headers.sort();
+    headers
+}
+
 /// A fresh empty folder that goes away with the value.
 pub struct TempDir(PathBuf);
 
