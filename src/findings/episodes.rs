@@ -5,6 +5,7 @@ use super::gate::{BROAD, BROAD_MARGIN, SLOWEST};
 use super::premature::{self, Start};
 use super::{Observation, Subject, Tachycardia};
 use crate::beats::{ClassId, median};
+use crate::recording::Weight;
 use crate::units::{PerMinute, Seconds};
 
 /// Fewest beats of a tachycardia (own choice).
@@ -74,6 +75,7 @@ pub(super) fn observed(found: &Tachycardia) -> Option<Observation> {
         return None;
     }
     Some(Observation {
+        weight: Weight::Information,
         what: "measurements are of the whole recording, not of the tachycardia alone".to_owned(),
         leads: Vec::new(),
         value: None,

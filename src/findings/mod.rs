@@ -17,6 +17,7 @@ mod search;
 mod sinus;
 mod stretch;
 mod suspicion;
+mod swaps;
 mod window;
 
 pub use gate::{BROAD, BROAD_MARGIN, FEWEST_BEATS, FEWEST_LEADS, LARGEST_NOISE_UV, SLOWEST};
@@ -28,6 +29,7 @@ pub use search::{
 use crate::average::RepresentativeBeat;
 use crate::beats::{Beats, Channels};
 use crate::measure::Measurements;
+use crate::recording::Weight;
 
 /// What is searched.
 #[derive(Clone, Copy, Debug)]
@@ -48,9 +50,10 @@ pub fn search(subject: &Subject, sinus: Option<(&RepresentativeBeat, &Measuremen
         Err(why) => Search::NotDone(why),
         Ok(gate) => Search::Done(Box::new(retrograde::search(subject, sinus, gate))),
     };
-    let mut observations = Vec::new();
+    let mut observations = swaps::suspected(subject);
     if matches!(&retrograde_p, Search::Done(done) if sinus.is_some() && !done.compared) {
         observations.push(Observation {
+            weight: Weight::Information,
             what: "the sinus recording was not compared: its QRS is not that of the tachycardia, its T is \
                    not marked, or leads are missing"
                 .to_owned(),

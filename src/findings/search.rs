@@ -1,6 +1,6 @@
 //! What was searched for and what came of it.
 
-use crate::recording::{Lead, PerLead};
+use crate::recording::{Lead, PerLead, Weight};
 use crate::units::{Degrees, Millivolts, PerMinute, Seconds};
 use std::fmt;
 
@@ -186,6 +186,8 @@ pub enum WaveAtEnd {
 /// Something that is not a retrograde-P sign but worth a look.
 #[derive(Clone, Debug, PartialEq)]
 pub struct Observation {
+    /// How much it matters to the reader.
+    pub weight: Weight,
     /// What, in plain words.
     pub what: String,
     /// In which leads.

@@ -1,5 +1,7 @@
 //! What is suspected, on recordings of known truth, and what is not, on real ones.
 
+mod swaps;
+
 use crate::support::{headers, project, shared};
 use leadsheet::case::{Case, Settings};
 use leadsheet::findings::{PBefore, Search, SearchDone, Sign, WhyNot};
@@ -9,7 +11,7 @@ use serde_json::Value;
 use std::fs;
 use std::path::{Path, PathBuf};
 
-fn recording(header: &Path) -> Recording {
+pub(crate) fn recording(header: &Path) -> Recording {
     let decoded = leadsheet::input::read(header).unwrap_or_else(|error| panic!("{error}"));
     Recording::from_decoded(decoded).unwrap_or_else(|refusal| panic!("{}: {refusal}", header.display()))
 }

@@ -268,5 +268,5 @@ fn observation(found: &Observation) -> Note {
     if let Some(evidence) = found.evidence {
         text.push_str(&format!(", {} of {} beats", evidence.showing, evidence.examined));
     }
-    Note::information(text)
+    Note { weight: found.weight, text }
 }
