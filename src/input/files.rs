@@ -1,5 +1,6 @@
 //! Files from disk: the one that was named, and those beside it.
 
+use super::pieces::Pieces;
 use super::{At, Error, Fault};
 use sha2::{Digest, Sha256};
 use std::borrow::Cow;
@@ -79,6 +80,17 @@ impl Files {
     /// All bytes of a data file.
     pub fn data(&mut self, path: &Path) -> Result<Vec<u8>, Error> {
         self.read(path, MAX_DATA)
+    }
+
+    /// A data file to be read from front to end; only what the caller takes stands in memory.
+    pub fn pieces<'a>(&'a mut self, path: &'a Path) -> Result<Pieces<'a>, Error> {
+        let open = || -> io::Result<(File, u64)> {
+            let file = open_regular(path)?;
+            let length = file.metadata()?.len();
+            Ok((file, length))
+        };
+        let (file, length) = open().map_err(|error| Fault::Io(error).within(path))?;
+        Ok(Pieces::new(file, length, path, &mut self.hash))
     }
 
     fn read(&mut self, path: &Path, max: u64) -> Result<Vec<u8>, Error> {

@@ -5,10 +5,12 @@
 
 mod clipping;
 mod csv;
+mod edf;
 mod error;
 mod export;
 mod files;
 mod limits;
+mod pieces;
 mod stated;
 mod table;
 mod voltage;

@@ -79,6 +79,7 @@ impl Sorted {
         for signal in signals {
             match &signal.quantity {
                 Quantity::Other(unit) => {
+                    let unit = if unit == Quantity::NO_UNIT { "no unit stated" } else { unit };
                     sorted.left_out.push(format!("{} ({unit})", shown(&signal.name)));
                     continue;
                 }

@@ -48,6 +48,11 @@ pub enum Quantity {
     Voltage,
     /// A potential whose scale the source does not state; the samples are in mV by the format's default.
     UncalibratedVoltage,
-    /// Anything else; the samples are in this unit, as written.
+    /// Anything else; the samples are in this unit, as written, or in [`Quantity::NO_UNIT`].
     Other(String),
+}
+
+impl Quantity {
+    /// The unit of a signal whose source states none: WFDB's word for "no units".
+    pub const NO_UNIT: &'static str = "NU";
 }

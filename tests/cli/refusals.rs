@@ -1,7 +1,7 @@
 //! What can't be printed: a clear message, an exit status other than 0, no output file.
 
 use crate::support::program::leadsheet;
-use crate::support::{TempDir, project};
+use crate::support::{TempDir, project, shared};
 use std::fs;
 use std::path::Path;
 
@@ -85,6 +85,19 @@ fn bad_recordings_are_refused_with_what_to_do() {
     let slow = "time [s],II [mV]\n".to_owned()
         + &(0..400).map(|n| format!("{},{}\n", n as f64 * 0.02, n % 3)).collect::<String>();
     refused(folder, &csv(folder, "slow.csv", &slow), &["50", "100"]);
+}
+
+#[test]
+fn what_holds_no_lead_is_not_printed_but_exported() {
+    let Some(path) = shared("formats/edf/test_generator_2.edf") else { return };
+    let temp = TempDir::new();
+    let source = path.to_str().expect("UTF-8");
+    refused(temp.path(), source, &["no signal has the name of a lead", "squarewave"]);
+    for (output, files) in [("a.csv", ["a.csv", "a.toml"]), ("b.hea", ["b.hea", "b.dat"])] {
+        let ran = leadsheet(temp.path(), &["export", source, "-o", output]);
+        assert_eq!(ran.status, Some(0), "{output}: {}", ran.stderr);
+        assert!(files.iter().all(|file| temp.path().join(file).exists()), "{output}: {}", ran.stdout);
+    }
 }
 
 #[test]

@@ -1,5 +1,6 @@
 //! Damaged files: an error or a sound recording, never a panic.
 
+use crate::support::edf::{Edf, EdfSignal};
 use crate::support::{TempDir, project, shared};
 use leadsheet::input::{self, Target};
 use leadsheet::recording::Recording;
@@ -18,12 +19,29 @@ impl Sample {
     }
 }
 
+/// Two leads with a gap and annotations.
+fn edf(reserved: &'static str, label: &'static str, width: usize) -> Sample {
+    let counts: Vec<i32> = (0..300).map(|at| at * 37 % 2000 - 1000).collect();
+    let times = ["+0.25\x14\x14\x00", "+1.25\x14\x14\x00+1.5\x15\x30.5\x14here\x14\x00", "+3\x14\x14\x00"];
+    let mut first = EdfSignal::lead("ECG I", 100, &counts, width);
+    first.prefilter = "HP:0.05Hz LP:150Hz N:50Hz";
+    let signals = vec![
+        first,
+        EdfSignal::lead("ECG II", 100, &counts, width),
+        EdfSignal::lead("SpO2", 1, &counts[..3], width),
+        EdfSignal::annotations(label, &times),
+    ];
+    Sample(vec![("sample.edf".to_owned(), Edf::plus(reserved, "3", signals).bytes())])
+}
+
 fn samples() -> Vec<Sample> {
     let hostile = project().join("tests/hostile");
     let mut samples = vec![
         Sample::of(&[hostile.join("wfdb-unknown-leads.hea"), hostile.join("samples.dat")]),
         Sample::of(&[hostile.join("csv-time-unsteady.csv")]),
         Sample::of(&[hostile.join("sidecar-too-few-leads.csv"), hostile.join("sidecar-too-few-leads.toml")]),
+        edf("EDF+D", "EDF Annotations", 2),
+        edf("BDF+C", "BDF Annotations", 3),
     ];
     if let Some(folder) = shared("formats/wfdb") {
         let record =
@@ -85,6 +103,11 @@ fn a_file_cut_short_anywhere_is_an_error_or_a_sound_recording() {
     }
 }
 
+/// Damaged versions of each sample: as many as `FLIPS` in the environment says.
+fn rounds() -> usize {
+    std::env::var("FLIPS").map_or(600, |rounds| rounds.parse().expect("a number in FLIPS"))
+}
+
 #[test]
 fn flipped_bytes_are_an_error_or_a_sound_recording() {
     // A small generator with a fixed seed, so that every run flips the same (xorshift, Marsaglia 2003 (m)).
@@ -98,7 +121,7 @@ fn flipped_bytes_are_an_error_or_a_sound_recording() {
     for Sample(files) in samples() {
         let folder = TempDir::new();
         files.iter().for_each(|(name, bytes)| put(folder.path(), name, bytes));
-        for round in 0..600 {
+        for round in 0..rounds() {
             // Most damage goes into the text, where it does most.
             let (name, bytes) = &files[if round % 4 == 0 { next(files.len()) } else { 0 }];
             let mut damaged = bytes.clone();
@@ -113,6 +136,29 @@ fn flipped_bytes_are_an_error_or_a_sound_recording() {
             put(folder.path(), name, &damaged);
             use_it(folder.path(), &files[0].0);
             put(folder.path(), name, bytes);
+        }
+    }
+}
+
+#[test]
+fn every_number_of_a_binary_header_at_its_limits_is_an_error_or_a_sound_recording() {
+    let folder = TempDir::new();
+    let Sample(files) = edf("EDF+D", "EDF Annotations", 2);
+    let (name, bytes) = &files[0];
+    // Where a file of 4 signals holds its numbers, and how wide.
+    let fixed = [(184, 8), (236, 8), (244, 8), (252, 4)];
+    let limits = (0..16).map(|at| (256 + 4 * 104 + at * 8, 8));
+    let samples = (0..4).map(|at| (256 + 4 * 216 + at * 8, 8));
+    for (start, width) in fixed.into_iter().chain(limits).chain(samples) {
+        for number in [
+            "", "0", "1", "-1", "2", "9999", "99999999", "-9999999", "1e300", "1e-300", "-1e300", "nan",
+            "inf", "0x10",
+        ] {
+            let mut damaged = bytes.clone();
+            let text = format!("{number:<width$}");
+            damaged[start..start + width].copy_from_slice(&text.as_bytes()[..width]);
+            put(folder.path(), name, &damaged);
+            use_it(folder.path(), name);
         }
     }
 }

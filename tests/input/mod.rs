@@ -1,6 +1,7 @@
 //! Reading recordings, against values decoded by others.
 
 mod csv;
+mod edf;
 mod export;
 mod hostile;
 mod leads;

@@ -2,6 +2,7 @@
 
 pub mod annotations;
 pub mod dipole;
+pub mod edf;
 pub mod golden;
 pub mod npz;
 pub mod program;

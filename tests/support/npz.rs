@@ -71,6 +71,10 @@ fn array(npy: &[u8]) -> Array {
         "<i8" => {
             Array::Numbers(by_rows(eight.map(|word| i64::from_le_bytes(word) as f64).collect(), &header))
         }
+        "<i4" => {
+            let four = data.chunks_exact(4).map(|word| <[u8; 4]>::try_from(word).expect("four bytes"));
+            Array::Numbers(by_rows(four.map(|word| i32::from_le_bytes(word).into()).collect(), &header))
+        }
         text => {
             let width: usize =
                 text.strip_prefix("<U").and_then(|width| width.parse().ok()).expect("a text type");

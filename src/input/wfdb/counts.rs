@@ -56,11 +56,13 @@ impl Counts {
             Some(step) => per_unit(step),
             None => decimal_gain(samples).unwrap_or_else(|| finest_gain(low, high)),
         };
-        let [lowest, highest] = [low, high].map(|value| (value * gain).round());
+        let phase = phase(samples, gain);
+        let steps = |value: f64| (value * gain - phase).round();
+        let [lowest, highest] = [low, high].map(steps);
         let Some((width, zero)) = narrowest(lowest, highest) else {
             return Err(ExportError::Range { signal: signal.name.clone() });
         };
-        let count = |index: usize| Some(((samples.at(index)? * gain).round() - zero) as i32);
+        let count = |index: usize| Some((steps(samples.at(index)?) - zero) as i32);
         let counts = (0..samples.len()).map(count).collect();
         Ok(Self { gain, baseline: -(zero as i64), width, counts })
     }
@@ -74,6 +76,13 @@ impl Counts {
     pub fn checksum(&self, width: Width, length: usize) -> i16 {
         (0..length).fold(0i16, |sum, index| sum.wrapping_add(self.at(index, width) as i16))
     }
+}
+
+/// How far the samples lie from whole steps, -0.5 to 0.5. A source may have no count for 0, but the header holds
+/// a whole one: all samples move by the same, rather than each to its side.
+fn phase(samples: &Samples, gain: f64) -> f64 {
+    let first = samples.runs().find_map(|(_, run)| run.first()).map_or(0.0, |value| value * gain);
+    first - first.round()
 }
 
 /// The narrowest format that holds the range, and the value that is stored as 0. That is 0 itself where it

@@ -64,14 +64,14 @@ impl Frame {
     }
 }
 
-/// Of two whole numbers the greatest; otherwise the smaller rate, if it divides.
+/// The greatest rate of which both are whole multiples, by Euclid; the remainders of whole multiples are
+/// nothing but rounding.
 fn common_divisor(a: f64, b: f64) -> f64 {
     let (mut high, mut low) = (a.max(b), a.min(b));
-    if high.fract() != 0.0 || low.fract() != 0.0 {
-        return low;
-    }
-    while low > 0.0 {
-        (high, low) = (low, high % low);
+    let rounding = 1e-9 * low;
+    while low > rounding {
+        let rest = high % low;
+        (high, low) = (low, if low - rest < rounding { 0.0 } else { rest });
     }
     high
 }
