@@ -1,5 +1,6 @@
 //! All integration tests, one binary. A test's name is the sentence that it holds.
 
+mod accuracy;
 mod architecture;
 mod batch;
 mod cli;

@@ -10,6 +10,7 @@ mod episodes;
 mod evidence;
 mod gate;
 mod linear;
+mod noise;
 mod ordinary_p;
 mod premature;
 mod retrograde;
@@ -50,7 +51,8 @@ pub fn search(subject: &Subject, sinus: Option<(&RepresentativeBeat, &Measuremen
         Err(why) => Search::NotDone(why),
         Ok(gate) => Search::Done(Box::new(retrograde::search(subject, sinus, gate))),
     };
-    let mut observations = swaps::suspected(subject);
+    let mut observations: Vec<Observation> = noise::observed(subject).into_iter().collect();
+    observations.extend(swaps::suspected(subject));
     if matches!(&retrograde_p, Search::Done(done) if sinus.is_some() && !done.compared) {
         observations.push(Observation {
             weight: Weight::Information,
