@@ -52,6 +52,9 @@ fn imports_of(folder: &Path, found: &mut BTreeMap<String, String>) {
             imports_of(&path, found);
             continue;
         }
+        if path.extension().is_none_or(|extension| extension != "rs") {
+            continue;
+        }
         let text = fs::read_to_string(&path).expect("source is text");
         for (number, line) in text.lines().enumerate() {
             let code = line.split("//").next().unwrap_or("");

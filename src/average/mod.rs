@@ -6,4 +6,4 @@
 
 mod representative;
 
-pub use representative::{LeftOut, RepresentativeBeat, WhyLeftOut, representative};
+pub use representative::{LeftOut, RepresentativeBeat, WhyLeftOut, representative, representative_of};

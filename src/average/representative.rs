@@ -95,10 +95,22 @@ struct Part {
 
 /// The representative beat of a class; `None` when no beat of it can be used.
 pub fn representative(channels: &Channels, beats: &Beats, class: ClassId) -> Option<RepresentativeBeat> {
+    let members: Vec<usize> = (0..beats.all.len()).filter(|&index| beats.all[index].class == class).collect();
+    representative_of(channels, beats, &members)
+}
+
+/// The representative beat of some beats of one class, given as indices into the beats of the recording in
+/// order; `None` when none of them can be used.
+pub fn representative_of(
+    channels: &Channels,
+    beats: &Beats,
+    members: &[usize],
+) -> Option<RepresentativeBeat> {
+    let class = beats.all.get(*members.first()?)?.class;
     let rate = beats.rate;
     let before = rate.count(BEFORE);
     let length = before + rate.count(AFTER) + 1;
-    let (mut parts, mut left_out) = parts(channels, beats, class);
+    let (mut parts, mut left_out) = parts(channels, beats, members);
     if parts.len() > ENOUGH {
         let every = parts.len() as f64 / ENOUGH as f64;
         let wanted: Vec<usize> = (0..ENOUGH).map(|index| (index as f64 * every) as usize).collect();
@@ -140,7 +152,7 @@ pub fn representative(channels: &Channels, beats: &Beats, class: ClassId) -> Opt
     Some(beat)
 }
 
-fn parts(channels: &Channels, beats: &Beats, class: ClassId) -> (Vec<Part>, Vec<LeftOut>) {
+fn parts(channels: &Channels, beats: &Beats, members: &[usize]) -> (Vec<Part>, Vec<LeftOut>) {
     let rate = beats.rate;
     let count = |time: Seconds| rate.count(time) as isize;
     let (qrs_before, qrs_after) = (count(Seconds::literal(0.060)), count(Seconds::literal(0.100)));
@@ -148,7 +160,8 @@ fn parts(channels: &Channels, beats: &Beats, class: ClassId) -> (Vec<Part>, Vec<
     let length = channels.len() as isize;
     let mut all = Vec::new();
     let mut left_out = Vec::new();
-    for (index, beat) in beats.all.iter().enumerate().filter(|(_, beat)| beat.class == class) {
+    let premature = PREMATURE * median_interval(beats, members);
+    for &index in members {
         let fiducial = at(index);
         let mut from = -count(BEFORE);
         let mut to = count(AFTER) + 1;
@@ -173,7 +186,8 @@ fn parts(channels: &Channels, beats: &Beats, class: ClassId) -> (Vec<Part>, Vec<
         if from > -qrs_before.min(fiducial.max(1)) || to < qrs_after || from >= to {
             left_out.push(LeftOut { beat: index, why: WhyLeftOut::Cut });
         } else {
-            all.push((Part { beat: index, fiducial, from, to }, follows_ectopic(beats, index, beat.class)));
+            let after = follows_ectopic(beats, index, premature);
+            all.push((Part { beat: index, fiducial, from, to }, after));
         }
     }
     // Only while enough others are left: under bigeminy every beat follows an ectopic one.
@@ -190,14 +204,23 @@ fn parts(channels: &Channels, beats: &Beats, class: ClassId) -> (Vec<Part>, Vec<
     (kept, left_out)
 }
 
-fn follows_ectopic(beats: &Beats, index: usize, class: ClassId) -> bool {
-    if index < 2 || beats.all[index - 1].class == class {
-        return false;
-    }
-    let interval = |index: usize| (beats.all[index].fiducial.0 - beats.all[index - 1].fiducial.0) as f64;
-    let mut all: Vec<f64> = (1..beats.all.len()).map(interval).collect();
-    all.sort_by(f64::total_cmp);
-    interval(index - 1) < PREMATURE * all[all.len() / 2]
+fn interval(beats: &Beats, index: usize) -> f64 {
+    (beats.all[index].fiducial.0 - beats.all[index - 1].fiducial.0) as f64
+}
+
+/// Median RR from a little before the first member to the last, in samples; 0 where there is none.
+fn median_interval(beats: &Beats, members: &[usize]) -> f64 {
+    let (Some(&first), Some(&last)) = (members.first(), members.last()) else { return 0.0 };
+    let mut all: Vec<f64> =
+        (first.saturating_sub(8).max(1)..=last).map(|index| interval(beats, index)).collect();
+    if all.is_empty() { 0.0 } else { median(&mut all) }
+}
+
+/// Whether the beat before is of another class and came sooner than `premature`, in samples.
+fn follows_ectopic(beats: &Beats, index: usize, premature: f64) -> bool {
+    index >= 2
+        && beats.all[index - 1].class != beats.all[index].class
+        && interval(beats, index - 1) < premature
 }
 
 /// Leaves out beats whose QRS and ST differ from the median beat far more than is typical.

@@ -8,7 +8,7 @@ mod table;
 
 pub use analyse::{AnalyseError, SHORTEST};
 pub use analysis::{Analysis, Case, Cut, Settings, Sinus, USUAL_HIGH_CUT, USUAL_LOW_CUT};
-pub use table::{Entry, Row, Spread, rp_interval, table};
+pub use table::{Entry, Row, rp_interval, table};
 
 /// Stands on every sheet and in every output.
 pub const CAUTION: &str = "Measured and marked automatically, not confirmed: for a qualified reader. \

@@ -4,7 +4,6 @@ use super::Case;
 use crate::findings::Search;
 use crate::measure::{Measured, Reason};
 use crate::units::{Degrees, PerMinute, Seconds};
-use std::fmt;
 
 /// One row of the measurement table.
 #[derive(Clone, Debug, PartialEq, Eq)]
@@ -20,33 +19,17 @@ pub struct Row {
 /// What stands in a row.
 #[derive(Clone, Debug, PartialEq, Eq)]
 pub enum Entry {
-    /// A value, rounded, and how sure it is if that is known.
+    /// A value, rounded, and how sure it is as far as that is known; all in the same unit.
     Value {
         /// The number.
         value: String,
-        /// In the same unit.
-        spread: Option<Spread>,
+        /// About two thirds of the errors are smaller.
+        expected_error: Option<String>,
+        /// Standard deviation of the values of the single beats.
+        over_beats: Option<String>,
     },
     /// Why there is no value.
     Reason(String),
-}
-
-/// One standard deviation, rounded: of what, must be said beside it.
-#[derive(Clone, Debug, PartialEq, Eq)]
-pub enum Spread {
-    /// Of the values of the single beats.
-    OverBeats(String),
-    /// Of the error to be expected.
-    ExpectedError(String),
-}
-
-impl fmt::Display for Spread {
-    fn fmt(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
-        match self {
-            Spread::OverBeats(number) => write!(f, "± {number}"),
-            Spread::ExpectedError(number) => write!(f, "± {number} expected error"),
-        }
-    }
 }
 
 /// The rows of a case, in the order of the beat: rate, then onset to offset, then axes.
@@ -85,7 +68,8 @@ fn row<T: Copy>(
     let entry = match measured {
         Measured::Value(reading) => Entry::Value {
             value: whole(number(reading.value)),
-            spread: reading.spread.map(|spread| Spread::OverBeats(whole(number(spread)))),
+            expected_error: reading.expected_error.map(|error| whole(number(error))),
+            over_beats: reading.spread.map(|spread| whole(number(spread))),
         },
         Measured::NotMeasurable(reason) => Entry::Reason(reason.to_string()),
     };
@@ -99,7 +83,8 @@ fn rp(search: &Search) -> Row {
         entry: match rp_interval(search) {
             Ok((rp, error)) => Entry::Value {
                 value: whole(rp.ms()),
-                spread: error.map(|error| Spread::ExpectedError(whole(error.ms()))),
+                expected_error: error.map(|error| whole(error.ms())),
+                over_beats: None,
             },
             Err(reason) => Entry::Reason(reason),
         },

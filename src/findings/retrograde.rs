@@ -177,7 +177,9 @@ pub(super) fn search(
     done.compared = overlay.is_some();
     let model = if done.compared { &COMPARED } else { &ALONE };
     let Some(weighed) = weigh(&curves, cycle, overlay.as_ref(), model) else { return done };
-    if suspicion::likely(&weighed, rr, done.compared) {
+    // A measured P before the QRS is the better account of a late wave, unless the sinus beat says otherwise.
+    let ordinary = !done.compared && marks.p.is_some() && weighed.retrograde.onset >= rr / 2.0;
+    if !ordinary && suspicion::likely(&weighed, rr, done.compared) {
         let given = Given {
             subject,
             curves: &curves,

@@ -40,7 +40,7 @@ impl Stretch {
             .map(|pair| subject.beats.rate.duration(pair[1].fiducial.0 - pair[0].fiducial.0).get())
             .collect();
         if let (false, Some(value)) = (intervals.is_empty(), Seconds::new(median(&mut intervals))) {
-            measurements.rr = Measured::Value(Reading { value, spread: None });
+            measurements.rr = Measured::Value(Reading::bare(value));
         }
         let qrs = &measurements.representative.as_ref()?.qrs;
         let qrs_onset = qrs.onset.unwrap_or(qrs.peak).ms() - LATE;

@@ -39,7 +39,7 @@ pub(super) fn of_wave(beat: &RepresentativeBeat, from: Seconds, to: Seconds) -> 
         return Measured::NotMeasurable(Reason::BelowNoise { noise });
     }
     match frontal_axis(net_i, net_avf) {
-        Some(value) => Measured::Value(Reading { value, spread: None }),
+        Some(value) => Measured::Value(Reading::bare(value)),
         None => Measured::NotMeasurable(Reason::BelowNoise { noise }),
     }
 }

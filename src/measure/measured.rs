@@ -19,6 +19,15 @@ pub struct Reading<T> {
     pub value: T,
     /// Standard deviation over the beats; `None` where there is only one.
     pub spread: Option<T>,
+    /// About two thirds of the errors against a reader are smaller; `None` where it is not known.
+    pub expected_error: Option<T>,
+}
+
+impl<T> Reading<T> {
+    /// A value of which nothing more is known.
+    pub fn bare(value: T) -> Self {
+        Self { value, spread: None, expected_error: None }
+    }
 }
 
 /// Why there is no value. The text is short enough for a table cell.

@@ -10,10 +10,12 @@ mod classes;
 mod global;
 mod measured;
 mod measurements;
+pub mod network;
 mod p_wave;
 mod presence;
 mod qrs;
 mod qtc;
+mod seen;
 mod segments;
 mod shape;
 mod slopes;
@@ -28,7 +30,7 @@ use crate::average::RepresentativeBeat;
 use crate::beats::{Beats, Channels, Rhythm};
 use crate::recording::{Lead, PerLead};
 use crate::units::{Degrees, Millivolts, PerMinute, Seconds, Span, Spans};
-use classes::Marked;
+use classes::{Classes, Marked};
 use global::Intervals;
 
 /// RR may spread so far around its mean for a corrected QT: (longest − shortest) / mean (own limit).
@@ -41,8 +43,8 @@ pub fn measure(
     representative: Option<&RepresentativeBeat>,
 ) -> Measurements {
     let rr_change = rr_change(beats);
-    let classes = classes::mark_all(channels, beats, representative, rr_change);
-    let dominant = classes.first().and_then(Option::as_ref);
+    let classes = Classes::mark(channels, beats, representative, rr_change);
+    let dominant = classes.dominant();
     let (rate, rr) = rate_and_rr(beats, &channels.gaps);
     let intervals = match dominant {
         Some(marked) => Intervals::of(marked, &why_no_p(beats, rr_change)),
@@ -75,16 +77,10 @@ pub fn measure(
     }
 }
 
-/// The class of a beat, or the largest where its own has no marks.
-fn class_of<'a>(beats: &Beats, classes: &'a [Option<Marked>], beat: usize) -> Option<&'a Marked> {
-    let own = classes.get(beats.all[beat].class.0).and_then(Option::as_ref);
-    own.or_else(|| classes.first().and_then(Option::as_ref))
-}
-
-fn beat_marks(beats: &Beats, classes: &[Option<Marked>]) -> Vec<BeatMarks> {
+fn beat_marks(beats: &Beats, classes: &Classes) -> Vec<BeatMarks> {
     (0..beats.all.len())
         .filter_map(|index| {
-            let marked = class_of(beats, classes, index)?;
+            let marked = classes.of(index)?;
             let beat = beats.all[index];
             let place = marked.place(index);
             Some(global::beat(
@@ -97,9 +93,9 @@ fn beat_marks(beats: &Beats, classes: &[Option<Marked>]) -> Vec<BeatMarks> {
         .collect()
 }
 
-fn lead_marks(lead: Lead, beats: &Beats, classes: &[Option<Marked>]) -> Option<Vec<LeadMarks>> {
+fn lead_marks(lead: Lead, beats: &Beats, classes: &Classes) -> Option<Vec<LeadMarks>> {
     (0..beats.all.len())
-        .filter_map(|index| Some((index, class_of(beats, classes, index)?)))
+        .filter_map(|index| Some((index, classes.of(index)?)))
         .map(|(index, marked)| {
             let beat = beats.all[index];
             let dominant = beat.class == Beats::DOMINANT;
@@ -118,15 +114,20 @@ fn lead_mark(
     let signal = marked.beat.names.iter().position(|name| *name == Some(lead))?;
     let shape = marked.shape();
     let wave = |mark: &shape::Mark, shift: f64| Wave {
-        onset: mark.onset.map(|onset| fiducial + shape.time(onset + shift)),
+        onset: mark.onset.filter(|_| mark.told[0]).map(|onset| fiducial + shape.time(onset + shift)),
         peak: fiducial + shape.time(mark.peak + shift),
         offset: fiducial + shape.time(mark.offset + shift),
     };
-    let p = global::p_shift(marked, place)
-        .zip(marked.p.as_ref())
-        .map(|(shift, (p, _))| wave(&p.each[signal], shift));
-    let t = marked.t.as_ref().map(|(t, shifts)| {
-        wave(&t.each[signal], place.and_then(|place| shifts.get(place).copied()).unwrap_or(0.0))
+    // A wave whose peak or end can't be told in this lead has no marks in it.
+    let told = |mark: &shape::Mark| mark.told[1] && mark.told[2];
+    let p = global::p_shift(marked, place).zip(marked.p.as_ref()).and_then(|(shift, (p, _))| {
+        let mark = &p.each[signal];
+        (told(mark) && mark.told[0]).then(|| wave(mark, shift))
+    });
+    let t = marked.t.as_ref().and_then(|(t, shifts)| {
+        let mark = &t.each[signal];
+        let shift = place.and_then(|place| shifts.get(place).copied()).unwrap_or(0.0);
+        told(mark).then(|| wave(mark, shift))
     });
     let found = amplitudes(marked, lead)?;
     Some(LeadMarks {
@@ -175,10 +176,9 @@ fn rate_and_rr(beats: &Beats, gaps: &Spans) -> (Measured<PerMinute>, Measured<Se
         Rhythm::Uncertain(_) => None,
     };
     match Seconds::new(mean).and_then(|rr| Some((rate_of(rr)?, rr))) {
-        Some((rate, rr)) => (
-            Measured::Value(Reading { value: rate, spread: None }),
-            Measured::Value(Reading { value: rr, spread }),
-        ),
+        Some((rate, rr)) => {
+            (Measured::Value(Reading::bare(rate)), Measured::Value(Reading { spread, ..Reading::bare(rr) }))
+        }
         _ => (Measured::NotMeasurable(Reason::UnstableRr), Measured::NotMeasurable(Reason::UnstableRr)),
     }
 }

@@ -100,6 +100,7 @@ pub(super) fn delineate(shape: &Shape, window: SearchWindow, qrs: &WaveMarks) ->
                 onset: Some(onset),
                 peak: common + (own.peak - common).clamp(-peak_clip, peak_clip) - shape.ms(2.4),
                 offset: offset.min(latest),
+                told: [true; 3],
             }
         })
         .collect();

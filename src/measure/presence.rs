@@ -1,20 +1,46 @@
 //! Is there a P wave? One question per recording and then one per beat, over all leads together:
 //! readers mark a P in all leads or in none, and agreement of the leads finds what one lead hides.
 
+use super::seen::Seen;
 use super::segments::{Segment, Thinned};
 use super::shape::{Shape, WaveMarks, median};
 use crate::units::Seconds;
 
 /// Least median correlation of each beat's P with the mean of the others (own choice after a trial).
 const REPEATS: f64 = 0.78;
+/// The same where the network sees a P.
+const REPEATS_IF_SEEN: f64 = 0.60;
 /// Least correlation of one beat's P with the mean.
 const SHOWS: f64 = 0.5;
 /// Smallest P in the fourth best lead, in mV.
 const SMALLEST: f64 = 0.012;
-/// Largest roughness of the stretch before P against that of P.
+/// Largest roughness of the stretch before P against that of P …
 const ROUGHEST: f64 = 0.65;
-/// The same, and the beat-to-beat change of RR over RR, that together mean fibrillation.
-const FIBRILLATING: (f64, f64) = (0.3, 0.15);
+/// … where the network is sure of a P in a regular rhythm that is not fast: the end of T may lie there …
+const ROUGHEST_IF_SURE: f64 = 0.95;
+/// … such as leaves room for a P behind T …
+pub(super) const ROOMY: Seconds = Seconds::literal(0.450);
+/// … and in a calm baseline.
+const CALM: f64 = 0.30;
+/// Beat-to-beat change of RR over RR from which a rhythm may be fibrillation.
+const IRREGULAR: f64 = 0.06;
+/// Classes of fewer beats don't show whether anything repeats.
+const FEW: usize = 3;
+/// The network's log-odds of a P: below this there is none …
+const UNLIKELY: f64 = -3.0;
+/// … from here on it is sure of one …
+const SURE: f64 = 2.0;
+/// … also where fibrillation is possible (own choices, on recordings that the network had not seen).
+const SURE_IF_IRREGULAR: f64 = 2.5;
+
+/// How the beats follow each other.
+#[derive(Clone, Copy, Debug)]
+pub(super) struct Pace {
+    /// Median interval before the beats of the class.
+    pub rr: Seconds,
+    /// Median change from one RR of the recording to the next, over RR.
+    pub change: f64,
+}
 
 /// Where each beat's P lies, if it has one: shift against the representative beat, in samples.
 pub(super) struct Presence {
@@ -28,31 +54,33 @@ pub(super) fn of_p(
     thinned: &Thinned,
     p: &WaveMarks,
     fiducials: &[usize],
-    rr_change: f64,
+    pace: Pace,
+    seen: &Seen,
 ) -> Option<Presence> {
     let (from, to) = (shape.moved(p.core.0, -24.0), shape.moved(p.core.1, 16.0));
     let count = (to - from) / thinned.stride;
     let start = from as isize - shape.fiducial as isize;
-    if count < 5 || amplitude(shape, from, to) < SMALLEST {
+    if count < 5 || (seen.p < SURE && amplitude(shape, from, to) < SMALLEST) {
         return None;
     }
     let segments: Vec<Option<Segment>> =
         fiducials.iter().map(|&fiducial| thinned.cut(fiducial as isize + start, count)).collect();
     let whole: Vec<&Segment> = segments.iter().flatten().collect();
-    if whole.len() < 2 {
-        return None;
-    }
-    let mut sum = Segment(vec![0.0; whole[0].0.len()]);
+    let first = whole.first()?;
+    let mut sum = Segment(vec![0.0; first.0.len()]);
     for segment in &whole {
         sum.add(segment);
     }
-    let repeats = median(whole.iter().map(|segment| {
-        let mut others = sum.clone();
-        for (rest, own) in others.0.iter_mut().zip(&segment.0) {
-            *rest -= own;
-        }
-        others.correlation(segment)
-    }));
+    // A single beat can't repeat.
+    let repeats = (whole.len() > 1).then(|| {
+        median(whole.iter().map(|segment| {
+            let mut others = sum.clone();
+            for (rest, own) in others.0.iter_mut().zip(&segment.0) {
+                *rest -= own;
+            }
+            others.correlation(segment)
+        }))
+    });
     let rough = median(fiducials.iter().filter_map(|&fiducial| {
         let here = |offset: isize| fiducial as isize + offset;
         let before = thinned
@@ -60,7 +88,20 @@ pub(super) fn of_p(
         let inside = thinned.roughness(here(start), here(start + (to - from) as isize))?;
         (inside > 0.0).then_some(before / inside)
     }));
-    if repeats < REPEATS || rough > ROUGHEST || (rough > FIBRILLATING.0 && rr_change > FIBRILLATING.1) {
+    let regular = pace.change <= IRREGULAR;
+    let there = match repeats {
+        // The flank of T repeats as well as a P.
+        Some(repeats) if pace.rr < ROOMY => repeats >= REPEATS && seen.p >= SURE,
+        Some(repeats) if fiducials.len() >= FEW => {
+            (repeats >= REPEATS && seen.p > UNLIKELY) || (repeats >= REPEATS_IF_SEEN && seen.sees_p())
+        }
+        // Too few beats to repeat anything: the network must be sure, and the baseline calm.
+        _ => seen.p >= SURE && rough <= CALM,
+    };
+    let roomy = regular && pace.rr >= ROOMY && seen.p >= SURE;
+    let roughest = if roomy { ROUGHEST_IF_SURE } else { ROUGHEST };
+    // Fibrillation is irregular; what lies before its QRS repeats by chance at best.
+    if !there || rough > roughest || (!regular && seen.p < SURE_IF_IRREGULAR) {
         return None;
     }
     let reach = shape.steps(50.0) as isize;

@@ -41,7 +41,14 @@ pub(super) fn measured(
                 return Measured::NotMeasurable(Reason::RateAbove(HIGHEST_RATE));
             }
             match formula(qt.value, rr.value) {
-                Some(value) => Measured::Value(Reading { value, spread: None }),
+                Some(value) => {
+                    let part = |of_qt: Option<Seconds>| of_qt.map(|part| value * (part / qt.value));
+                    Measured::Value(Reading {
+                        value,
+                        spread: part(qt.spread),
+                        expected_error: part(qt.expected_error),
+                    })
+                }
                 None => Measured::NotMeasurable(Reason::UnstableRr),
             }
         })

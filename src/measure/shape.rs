@@ -10,6 +10,21 @@ pub(super) struct Mark {
     pub onset: Option<f64>,
     pub peak: f64,
     pub offset: f64,
+    /// Whether onset, peak and offset can be told in this signal.
+    pub told: [bool; 3],
+}
+
+impl Mark {
+    /// The mark moved towards another by a part of the way; what the other can't tell isn't told.
+    pub fn towards(&self, other: &Mark, part: f64) -> Mark {
+        let between = |own: f64, other: f64| own + part * (other - own);
+        Mark {
+            onset: self.onset.zip(other.onset).map(|(own, other)| between(own, other)),
+            peak: between(self.peak, other.peak),
+            offset: between(self.offset, other.offset),
+            told: other.told,
+        }
+    }
 }
 
 /// One wave over all signals.
@@ -26,13 +41,11 @@ pub(super) struct Shape<'a> {
     pub beat: &'a RepresentativeBeat,
     pub rate: SampleRate,
     pub fiducial: usize,
-    pub length: usize,
 }
 
 impl<'a> Shape<'a> {
     pub fn of(beat: &'a RepresentativeBeat) -> Self {
-        let length = beat.signals.first().map_or(0, Vec::len);
-        Self { beat, rate: beat.rate, fiducial: beat.fiducial.0, length }
+        Self { beat, rate: beat.rate, fiducial: beat.fiducial.0 }
     }
 
     /// Milliseconds in samples, with fractions.

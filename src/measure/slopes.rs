@@ -9,55 +9,51 @@ fn half_gaussian(rate: SampleRate, sigma: Seconds) -> Vec<f64> {
     (0..=reach).map(|step| (-(step as f64 / sigma).powi(2) / 2.0).exp()).collect()
 }
 
-fn clamped(signal: &[f64], index: isize) -> f64 {
-    signal[index.clamp(0, signal.len() as isize - 1) as usize]
-}
-
 /// The slope of the signal behind a Gaussian, in mV/s; exact on a straight line.
 pub(super) fn slope(signal: &[f64], rate: SampleRate, sigma: Seconds) -> Vec<f64> {
     let weights = half_gaussian(rate, sigma);
     let norm: f64 =
         weights.iter().enumerate().map(|(step, weight)| 2.0 * (step * step) as f64 * weight).sum::<f64>();
-    let reach = weights.len() - 1;
-    let at = |index: usize| -> f64 {
-        let mut sum = 0.0;
-        if index >= reach && index + reach < signal.len() {
-            for (step, weight) in weights.iter().enumerate().skip(1) {
-                sum += step as f64 * weight * (signal[index + step] - signal[index - step]);
-            }
-        } else {
-            for (step, weight) in weights.iter().enumerate().skip(1) {
-                let (ahead, behind) = (index as isize + step as isize, index as isize - step as isize);
-                sum += step as f64 * weight * (clamped(signal, ahead) - clamped(signal, behind));
-            }
-        }
-        sum / norm * rate.get()
-    };
-    (0..signal.len()).map(at).collect()
+    let weights: Vec<f64> =
+        weights.iter().enumerate().map(|(step, weight)| step as f64 * weight * rate.get() / norm).collect();
+    folded(signal, &weights, 1, |ahead, behind| ahead - behind)
 }
 
 /// The signal behind a Gaussian, every `stride` samples.
 pub(super) fn smooth(signal: &[f64], rate: SampleRate, sigma: Seconds, stride: usize) -> Vec<f64> {
-    let weights = half_gaussian(rate, sigma);
+    let mut weights = half_gaussian(rate, sigma);
     let norm = weights[0] + 2.0 * weights[1..].iter().sum::<f64>();
+    weights.iter_mut().for_each(|weight| *weight /= norm);
+    // The middle one is met once, as its own two neighbours.
+    weights[0] /= 2.0;
+    folded(signal, &weights, stride.max(1), |ahead, behind| ahead + behind)
+}
+
+/// For every `stride`-th sample the sum over `weights` of what `pair` makes of the samples that lie so far
+/// ahead and behind; outside, the first and last sample are held.
+fn folded(signal: &[f64], weights: &[f64], stride: usize, pair: impl Fn(f64, f64) -> f64) -> Vec<f64> {
     let reach = weights.len() - 1;
-    (0..signal.len())
-        .step_by(stride.max(1))
-        .map(|index| {
-            let mut sum = weights[0] * signal[index];
-            if index >= reach && index + reach < signal.len() {
-                for (step, weight) in weights.iter().enumerate().skip(1) {
-                    sum += weight * (signal[index + step] + signal[index - step]);
-                }
-            } else {
-                for (step, weight) in weights.iter().enumerate().skip(1) {
-                    let (ahead, behind) = (index as isize + step as isize, index as isize - step as isize);
-                    sum += weight * (clamped(signal, ahead) + clamped(signal, behind));
-                }
+    let (Some(&first), Some(&last)) = (signal.first(), signal.last()) else { return Vec::new() };
+    let mut held = vec![first; reach];
+    held.extend_from_slice(signal);
+    held.extend(std::iter::repeat_n(last, reach));
+    let count = signal.len().div_ceil(stride);
+    let mut sums = vec![0.0; count];
+    // Weight by weight, so that neighbouring sums are made at once.
+    for (step, weight) in weights.iter().enumerate() {
+        let (ahead, behind) = (&held[reach + step..], &held[reach - step..]);
+        if stride == 1 {
+            for ((sum, ahead), behind) in sums.iter_mut().zip(ahead).zip(behind) {
+                *sum += weight * pair(*ahead, *behind);
             }
-            sum / norm
-        })
-        .collect()
+        } else {
+            let (ahead, behind) = (ahead.iter().step_by(stride), behind.iter().step_by(stride));
+            for ((sum, ahead), behind) in sums.iter_mut().zip(ahead).zip(behind) {
+                *sum += weight * pair(*ahead, *behind);
+            }
+        }
+    }
+    sums
 }
 
 /// The spatial velocity of several slopes, scaled to twelve leads: √(12/n · Σ slope²), in mV/s.

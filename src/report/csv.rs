@@ -1,6 +1,6 @@
 //! The measurements as one CSV table: quantity, value, unit, spread over beats, expected error, reason.
 
-use crate::case::{Case, Entry, Spread, table};
+use crate::case::{Case, Entry, table};
 
 /// The table with a header row; an empty cell is "none".
 ///
@@ -13,13 +13,14 @@ pub fn csv(case: &Case) -> Result<String, csv::Error> {
     for row in table(case) {
         let (value, spread, error, reason) = match row.entry {
             // A minus sign that a spreadsheet reads.
-            Entry::Value { value, spread } => {
-                let value = value.replace('−', "-");
-                match spread {
-                    Some(Spread::OverBeats(spread)) => (value, spread, String::new(), String::new()),
-                    Some(Spread::ExpectedError(error)) => (value, String::new(), error, String::new()),
-                    None => (value, String::new(), String::new(), String::new()),
-                }
+            Entry::Value { value, expected_error, over_beats } => {
+                let none = String::new;
+                (
+                    value.replace('−', "-"),
+                    over_beats.unwrap_or_else(none),
+                    expected_error.unwrap_or_else(none),
+                    none(),
+                )
             }
             Entry::Reason(reason) => (String::new(), String::new(), String::new(), reason),
         };

@@ -86,7 +86,7 @@ pub(super) struct RrOut {
 #[derive(Debug, Serialize)]
 #[serde(untagged)]
 pub(super) enum ValueOut {
-    Value { value: f64, unit: &'static str, spread: Option<f64> },
+    Value { value: f64, unit: &'static str, spread: Option<f64>, expected_error: Option<f64> },
     Reason { value: (), unit: &'static str, reason: String },
 }
 

@@ -111,7 +111,9 @@ fn rhythm(case: &Case) -> RhythmOut {
 fn value_out<T: Copy>(measured: &Measured<T>, unit: &'static str, number: impl Fn(T) -> f64) -> ValueOut {
     match measured {
         Measured::Value(reading) => {
-            ValueOut::Value { value: number(reading.value), unit, spread: reading.spread.map(&number) }
+            let expected_error = reading.expected_error.map(&number);
+            let spread = reading.spread.map(&number);
+            ValueOut::Value { value: number(reading.value), unit, spread, expected_error }
         }
         Measured::NotMeasurable(reason) => ValueOut::Reason { value: (), unit, reason: reason.to_string() },
     }
@@ -139,7 +141,9 @@ fn values(all: &Measurements, search: &Search) -> Values {
 
 fn rp(search: &Search) -> ValueOut {
     match rp_interval(search) {
-        Ok((rp, error)) => ValueOut::Value { value: ms(rp), unit: "ms", spread: error.map(ms) },
+        Ok((rp, error)) => {
+            ValueOut::Value { value: ms(rp), unit: "ms", spread: None, expected_error: error.map(ms) }
+        }
         Err(reason) => ValueOut::Reason { value: (), unit: "ms", reason },
     }
 }

@@ -20,11 +20,14 @@ pub fn text(case: &Case) -> String {
     );
     for row in table(case) {
         let _ = match row.entry {
-            Entry::Value { value, spread: Some(spread) } => {
-                writeln!(out, "{:<18}{value:>6} {:<6} {spread}", row.quantity, row.unit)
-            }
-            Entry::Value { value, spread: None } => {
-                writeln!(out, "{:<18}{value:>6} {}", row.quantity, row.unit)
+            Entry::Value { value, expected_error, over_beats } => {
+                let sure = [
+                    expected_error.map(|error| format!("± {error} expected error")),
+                    over_beats.map(|spread| format!("SD {spread} over beats")),
+                ];
+                let sure = sure.into_iter().flatten().collect::<Vec<_>>().join(", ");
+                let line = format!("{:<18}{value:>6} {:<6} {sure}", row.quantity, row.unit);
+                writeln!(out, "{}", line.trim_end())
             }
             Entry::Reason(reason) => writeln!(out, "{:<18}{:>6} {reason}", row.quantity, "–"),
         };

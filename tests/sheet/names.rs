@@ -39,6 +39,9 @@ fn signs_of(path: &Path, found: &mut Vec<(String, char)>) {
         }
         return;
     }
+    if path.extension().is_none_or(|extension| extension == "bin") {
+        return;
+    }
     let text = std::fs::read_to_string(path).expect("source is text");
     let program = text.split("#[cfg(test)]").next().unwrap_or_default();
     for line in program.lines().filter(|line| !line.trim_start().starts_with("//")) {

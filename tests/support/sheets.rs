@@ -112,13 +112,17 @@ fn analysis(recording: &Recording) -> Analysis {
         left_out: Vec::new(),
     };
     let value = |ms: f64, spread: f64| {
-        Measured::Value(Reading { value: s(ms / 1000.0), spread: Some(s(spread / 1000.0)) })
+        Measured::Value(Reading {
+            value: s(ms / 1000.0),
+            spread: Some(s(spread / 1000.0)),
+            expected_error: Some(s(0.007)),
+        })
     };
     let qrs = Wave { onset: Some(s(-0.036)), peak: s(0.0), offset: s(0.044) };
     let t = Wave { onset: None, peak: s(0.234), offset: s(0.290) };
     let marks = BeatMarks { dominant: true, p: None, qrs, t: Some(t) };
     let measurements = Measurements {
-        ventricular_rate: Measured::Value(Reading { value: PerMinute::literal(150.0), spread: None }),
+        ventricular_rate: Measured::Value(Reading::bare(PerMinute::literal(150.0))),
         rr: value(400.0, 2.0),
         p_duration: Measured::NotMeasurable(Reason::NoPBeforeQrs),
         pr: Measured::NotMeasurable(Reason::NoPBeforeQrs),
@@ -127,7 +131,7 @@ fn analysis(recording: &Recording) -> Analysis {
         qtc_bazett: Measured::NotMeasurable(Reason::RateAbove(PerMinute::literal(120.0))),
         qtc_fridericia: Measured::NotMeasurable(Reason::RateAbove(PerMinute::literal(120.0))),
         p_axis: Measured::NotMeasurable(Reason::NoPBeforeQrs),
-        qrs_axis: Measured::Value(Reading { value: Degrees::literal(-12.0), spread: None }),
+        qrs_axis: Measured::Value(Reading::bare(Degrees::literal(-12.0))),
         t_axis: Measured::NotMeasurable(Reason::BelowNoise { noise: Millivolts::literal(0.012) }),
         beats: Vec::new(),
         lead_beats: PerLead::default(),

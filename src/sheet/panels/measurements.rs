@@ -8,10 +8,11 @@ use super::HEADING;
 use crate::beats::{Beats, Rhythm, RrRange};
 use crate::case::{self, Entry};
 
-/// Right edge of the values, left edges of units and spreads, left edge of reasons: parts of the width.
+/// Right edge of the values, left edges of units, errors and spreads: parts of the width.
 const VALUE: f64 = 0.38;
 const UNIT: f64 = 0.40;
-const SPREAD: f64 = 0.52;
+const ERROR: f64 = 0.54;
+const OVER_BEATS: f64 = 0.76;
 /// Largest distance between rows.
 const WIDEST_ROW: f64 = 3.6;
 
@@ -21,7 +22,8 @@ pub(super) fn elements(sheet: &Sheet, area: Area) -> Result<Vec<Element>, Compos
     let (mut heading, rule) = super::heading(sheet, area, "Measurements");
     let at = |part: f64| area.left + area.width * part;
     let caption = area.top + sheet.heading().cap() + 0.2;
-    heading.push(label.left(at(SPREAD), caption, "standard deviation over beats"));
+    heading.push(label.left(at(ERROR), caption, "expected error"));
+    heading.push(label.left(at(OVER_BEATS), caption, "SD over beats"));
     let basis = basis(sheet, area)?;
     let rows = case::table(sheet.case);
     let leading = body.size * 1.22;
@@ -32,11 +34,14 @@ pub(super) fn elements(sheet: &Sheet, area: Area) -> Result<Vec<Element>, Compos
     for row in rows {
         let mut cells = vec![body.left(area.left, y, row.quantity)];
         match &row.entry {
-            Entry::Value { value, spread } => {
+            Entry::Value { value, expected_error, over_beats } => {
                 cells.push(body.bold().right(at(VALUE), y, value));
                 cells.push(body.left(at(UNIT), y, row.unit));
-                if let Some(spread) = spread {
-                    cells.push(label.left(at(SPREAD), y, &spread.to_string()));
+                if let Some(error) = expected_error {
+                    cells.push(label.left(at(ERROR), y, &format!("± {error}")));
+                }
+                if let Some(spread) = over_beats {
+                    cells.push(label.left(at(OVER_BEATS), y, spread));
                 }
             }
             Entry::Reason(reason) => {
