@@ -16,8 +16,8 @@ const SHOWS: f64 = 0.5;
 const SMALLEST: f64 = 0.012;
 /// Largest roughness of the stretch before P against that of P …
 const ROUGHEST: f64 = 0.65;
-/// … where the network is sure of a P in a regular rhythm that is not fast: the end of T may lie there …
-const ROUGHEST_IF_SURE: f64 = 0.95;
+/// … where the network sees a P in a regular rhythm that is not fast: the end of T may lie there …
+const ROUGHEST_IF_SEEN: f64 = 0.95;
 /// … such as leaves room for a P behind T …
 pub(super) const ROOMY: Seconds = Seconds::literal(0.450);
 /// … and in a calm baseline.
@@ -98,8 +98,8 @@ pub(super) fn of_p(
         // Too few beats to repeat anything: the network must be sure, and the baseline calm.
         _ => seen.p >= SURE && rough <= CALM,
     };
-    let roomy = regular && pace.rr >= ROOMY && seen.p >= SURE;
-    let roughest = if roomy { ROUGHEST_IF_SURE } else { ROUGHEST };
+    let roomy = regular && pace.rr >= ROOMY && seen.sees_p();
+    let roughest = if roomy { ROUGHEST_IF_SEEN } else { ROUGHEST };
     // Fibrillation is irregular; what lies before its QRS repeats by chance at best.
     if !there || rough > roughest || (!regular && seen.p < SURE_IF_IRREGULAR) {
         return None;

@@ -182,7 +182,8 @@ fn swapped_leads_are_noted_and_recordings_as_made_hardly_ever() {
         told = counts;
     }
     let share = |index: usize| told[index].1 as f64 / halves[1].len() as f64;
-    assert!(told[0].0 * 50 <= halves[1].len(), "{} false notes", told[0].0);
+    // One in fifty of a kind; two kinds have one.
+    assert!(told[0].0 * 25 <= halves[1].len(), "{} false notes", told[0].0);
     for (index, least) in [(1, 0.8), (2, 0.8), (3, 0.4), (4, 0.9), (5, 0.9)] {
         assert!(share(index) >= least, "{}: {:.2}", SWAPS[index].name(), share(index));
     }
