@@ -61,6 +61,11 @@ fn late(marks: &[Mark], rank: usize, shift: f64) -> f64 {
     ranks.map(|rank| latest(marks, rank, shift)).sum::<f64>() / count
 }
 
+/// Whether more than half of the signals can tell where the wave lies.
+fn told(marks: &WaveMarks) -> bool {
+    marks.each.iter().filter(|mark| mark.told.iter().all(|told| *told)).count() * 2 > marks.each.len()
+}
+
 /// The global mark of a wave, moved by `shift` samples.
 fn wave(marked: &Marked, marks: &WaveMarks, shift: f64, fiducial: Seconds) -> Wave {
     let shape = marked.shape();
@@ -83,10 +88,10 @@ pub(super) fn beat(marked: &Marked, place: Option<usize>, fiducial: Seconds, dom
     BeatMarks {
         dominant,
         p: p_shift(marked, place)
-            .zip(marked.p.as_ref())
+            .zip(marked.p.as_ref().filter(|(p, _)| told(p)))
             .map(|(shift, (p, _))| wave(marked, p, shift, fiducial)),
         qrs: wave(marked, &marked.qrs, 0.0, fiducial),
-        t: marked.t.as_ref().map(|(t, shifts)| {
+        t: marked.t.as_ref().filter(|(t, _)| told(t)).map(|(t, shifts)| {
             wave(marked, t, place.and_then(|place| shifts.get(place).copied()).unwrap_or(0.0), fiducial)
         }),
     }
@@ -158,6 +163,10 @@ impl Intervals {
         let constant = |ms: f64| if signals >= 8 { ms } else { 0.0 };
         let onset = earliest(&marked.qrs.each, rank, 0.0);
         let (p_duration, pr) = match &marked.p {
+            Some((p, _)) if !told(p) => (
+                Measured::NotMeasurable(Reason::LeadsDisagree),
+                Measured::NotMeasurable(Reason::LeadsDisagree),
+            ),
             Some((p, presence)) => {
                 let shifts: Vec<f64> = presence.shifts.iter().flatten().map(|shift| 0.8 * shift).collect();
                 let shift = median(shifts.iter().copied());
@@ -169,13 +178,17 @@ impl Intervals {
             }
             None => (Measured::NotMeasurable(no_p.clone()), Measured::NotMeasurable(no_p.clone())),
         };
-        let qrs = interval(
-            latest(&marked.qrs.each, qrs_rank, 0.0) - earliest(&marked.qrs.each, qrs_rank, 0.0),
-            constant(QRS),
-            None,
-            error(QRS_ERROR),
-        );
-        let qt = match &marked.t {
+        let qrs = if told(&marked.qrs) {
+            interval(
+                latest(&marked.qrs.each, qrs_rank, 0.0) - earliest(&marked.qrs.each, qrs_rank, 0.0),
+                constant(QRS),
+                None,
+                error(QRS_ERROR),
+            )
+        } else {
+            Measured::NotMeasurable(Reason::LeadsDisagree)
+        };
+        let qt = match marked.t.as_ref().filter(|(t, _)| told(t)) {
             Some((t, shifts)) => {
                 let ends: Vec<f64> = t.each.iter().map(|mark| mark.offset).collect();
                 let middle = median(ends.iter().copied());
