@@ -5,7 +5,7 @@ use leadsheet::input::{self, Target};
 use leadsheet::recording::{Decoded, Weight};
 use std::path::{Path, PathBuf};
 
-const WFDB: [&str; 16] = [
+const WFDB: [&str; 18] = [
     "03700181",
     "100_3chan",
     "100skew",
@@ -14,6 +14,8 @@ const WFDB: [&str; 16] = [
     "311derive_4",
     "a103l",
     "binformats",
+    "flacformats",
+    "mixedsignals",
     "s0010_re",
     "test01_00s",
     "test01_00s_frame",

@@ -55,6 +55,7 @@ fn samples() -> Vec<Sample> {
             record(&["310derive.hea", "310derive.dat"]),
             record(&["311derive_4.hea", "311derive_4.dat"]),
             record(&["3000003_0003.hea", "3000003_0003.dat"]),
+            record(&["flacformats.hea", "flacformats.d0", "flacformats.d1", "flacformats.d2"]),
             record(&["test01_00s_skewframe.hea", "test01_00s.dat"]),
             record(&formats.iter().map(String::as_str).collect::<Vec<_>>()),
         ]);

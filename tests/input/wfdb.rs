@@ -32,7 +32,7 @@ fn as_expected(header: &Path) {
 }
 
 // Source of all values here: decoded with the wfdb package 4.3.1 for Python (see SOURCES.md beside them);
-// binformats and test01_00s are equal to the text that WFDB's own C software printed.
+// binformats, flacformats and test01_00s are equal to the text that WFDB's own C software printed.
 #[test]
 fn every_record_of_a_format_that_is_read_decodes_as_another_program_decoded_it() {
     let Some(folder) = shared("formats/wfdb") else { return };
@@ -52,6 +52,8 @@ fn every_record_of_a_format_that_is_read_decodes_as_another_program_decoded_it()
         "a103l",
         "a103l-no-len",
         "binformats",
+        "flacformats",
+        "mixedsignals",
         "s0010_re",
         "test01_00s",
         "test01_00s_frame",
@@ -65,5 +67,18 @@ fn every_record_of_a_format_that_is_read_decodes_as_another_program_decoded_it()
         "multi-segment/s25047/s25047-2704-05-04-10-44n",
     ] {
         as_expected(&folder.join(format!("{record}.hea")));
+    }
+}
+
+#[test]
+fn a_flac_stream_of_few_bytes_gives_its_millions_of_samples() {
+    // Source: the header's own first samples and checksums, computed by the writer of the record; the name
+    // says that each signal is constant.
+    let Some(folder) = shared("formats/wfdb") else { return };
+    let decoded = input::read(&folder.join("flac_3_constant.hea")).unwrap_or_else(|error| panic!("{error}"));
+    assert!(decoded.notes.iter().all(|note| !note.text.contains("checksum")), "{:?}", decoded.notes);
+    for (signal, count) in decoded.signals.iter().zip([25.0, 50.0, 75.0]) {
+        assert_eq!(signal.samples.len(), 5_600_000);
+        assert_eq!(signal.samples.extremes(), Some((count / 200.0, count / 200.0)));
     }
 }

@@ -35,8 +35,14 @@ pub(super) fn looks_like_one(head: &str) -> bool {
     if rows.clone().next().is_none() {
         return first.to_lowercase().contains("v]");
     }
+    // A recording may open with a gap longer than the head.
+    let empty = |row: &&str| row.chars().all(|c| c == char::from(delimiter) || matches!(c, '"' | ' ' | '\r'));
+    let mut filled = rows.filter(|row| !empty(row)).peekable();
+    if filled.peek().is_none() {
+        return first.contains(']');
+    }
     let (mut numbers, mut cells) = (0, 0);
-    for cell in rows.take(20).flat_map(|row| row.split(char::from(delimiter))) {
+    for cell in filled.take(20).flat_map(|row| row.split(char::from(delimiter))) {
         let cell = cell.trim().trim_matches('"');
         cells += usize::from(!cell.is_empty());
         numbers += usize::from(parse(cell.as_bytes(), delimiter != b',').is_some());

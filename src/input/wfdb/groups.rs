@@ -1,10 +1,11 @@
 //! Signals that share a file, and so are interleaved in it frame by frame.
 
+use super::flac;
 use super::header::Header;
 use super::signal_line::SignalLine;
 use super::storage::Storage;
 use crate::input::files::{Files, beside};
-use crate::input::limits::{MAX_SAMPLES, at_most};
+use crate::input::limits::{MAX_SAMPLES, at_most, most_missing};
 use crate::input::{At, Error, Fault};
 use crate::recording::Note;
 use std::io::ErrorKind;
@@ -17,40 +18,72 @@ pub(super) struct Group<'a> {
     pub storage: Storage,
     /// Samples of one frame, all signals together.
     frame: u64,
-    bytes: Vec<u8>,
+    content: Content,
+}
+
+/// What the file of a group holds.
+enum Content {
+    /// Signals without a file.
+    Null,
+    Packed(Vec<u8>),
+    Flac(flac::Channels),
 }
 
 impl<'a> Group<'a> {
     /// All groups of a header, their files read.
     pub fn open_all(path: &Path, header: &'a Header, files: &mut Files) -> Result<Vec<Self>, Error> {
         let ranges = neighbours(&header.signals).map_err(|fault| fault.within(path))?;
-        ranges.into_iter().map(|range| Self::open(path, &header.signals[range], files)).collect()
+        let frame: u64 = header.signals.iter().map(|line| u64::from(line.samples_per_frame)).sum();
+        let stated = header.record.frames;
+        if let Some(frames) = stated {
+            at_most(MAX_SAMPLES, "samples in the record", frames.saturating_mul(frame))
+                .map_err(|fault| fault.within(path))?;
+        }
+        let most = stated.unwrap_or(MAX_SAMPLES / frame.max(1));
+        ranges
+            .into_iter()
+            .map(|range| Self::open(path, &header.signals[range], stated.is_some(), most, files))
+            .collect()
     }
 
-    fn open(header: &Path, lines: &'a [SignalLine], files: &mut Files) -> Result<Self, Error> {
-        let frame: u64 = lines.iter().map(|line| u64::from(line.samples_per_frame)).sum();
+    /// `frames` are the frames to be read, or where none are `stated` those that may be read at most.
+    fn open(
+        header: &Path,
+        lines: &'a [SignalLine],
+        stated: bool,
+        frames: u64,
+        files: &mut Files,
+    ) -> Result<Self, Error> {
         let Some(line) = lines.first() else {
             return Err(Fault::unsupported("the record holds no signal", "check its header").within(header));
         };
         let storage = Storage::of(line.format, line.at).map_err(|fault| fault.within(header))?;
-        if storage == Storage::Null && frame != lines.len() as u64 {
-            // Nothing backs the count, so it must not ask for memory.
-            let fault = Fault::malformed(
-                line.at,
-                "one sample a frame for a signal without a file",
-                frame.to_string(),
-                "correct the signal line",
-            );
-            return Err(fault.within(header));
+        let frame = lines.iter().map(|line| u64::from(line.samples_per_frame)).sum();
+        let mut group = Self { lines, storage, frame, content: Content::Null };
+        if storage == Storage::Null {
+            return Ok(group);
         }
-        let bytes = match storage {
-            Storage::Null => Vec::new(),
-            _ => {
-                let path = beside(header, &line.file, line.at).map_err(|fault| fault.within(header))?;
-                files.data(&path).map_err(|error| missing(error, header, line))?
+        let path = beside(header, &line.file, line.at).map_err(|fault| fault.within(header))?;
+        let bytes = files.data(&path).map_err(|error| missing(error, header, line))?;
+        group.content = Content::Packed(bytes);
+        if storage.is_flac() {
+            if let Some(other) = lines.iter().find(|own| own.samples_per_frame != line.samples_per_frame) {
+                let expected = format!("`x{}`, as the first signal of {}", line.samples_per_frame, line.file);
+                let found = format!("`x{}`", other.samples_per_frame);
+                let fault = Fault::malformed(
+                    other.at,
+                    expected,
+                    found,
+                    "all channels of a FLAC stream have one rate: correct the signal line",
+                );
+                return Err(fault.within(header));
             }
-        };
-        Ok(Self { lines, storage, frame, bytes })
+            let samples = frames.saturating_mul(u64::from(line.samples_per_frame));
+            let wanted = if stated { flac::Wanted::Exactly(samples) } else { flac::Wanted::UpTo(samples) };
+            let channels = flac::decode(group.sample_bytes(), storage.bits(), lines.len(), wanted);
+            group.content = Content::Flac(channels.map_err(|fault| fault.within(&path))?);
+        }
+        Ok(group)
     }
 
     /// Bytes before the first sample.
@@ -60,27 +93,30 @@ impl<'a> Group<'a> {
 
     /// The bytes of the samples; none when the offset lies behind the end.
     fn sample_bytes(&self) -> &[u8] {
-        usize::try_from(self.offset()).ok().and_then(|offset| self.bytes.get(offset..)).unwrap_or_default()
+        let Content::Packed(bytes) = &self.content else { return &[] };
+        usize::try_from(self.offset()).ok().and_then(|offset| bytes.get(offset..)).unwrap_or_default()
     }
 
     /// Whole frames in the file; `None` for signals without a file.
     fn frames(&self) -> Option<u64> {
-        let samples = self.storage.samples_in(self.sample_bytes().len() as u64);
-        (self.storage != Storage::Null).then_some(samples / self.frame)
+        let samples = match &self.content {
+            Content::Null => return None,
+            Content::Packed(_) => self.storage.samples_in(self.sample_bytes().len() as u64),
+            Content::Flac(channels) => channels.held.saturating_mul(channels.counts.len() as u64),
+        };
+        Some(samples / self.frame.max(1))
     }
 
     /// Refuses a file that is shorter than stated, before anything is allocated for it.
     pub fn require(&self, frames: u64, header: &Path) -> Result<(), Error> {
+        let (Some(line), Content::Packed(bytes)) = (self.lines.first(), &self.content) else { return Ok(()) };
         let samples = self.storage.bytes_of(frames.saturating_mul(self.frame));
         let needed = samples.saturating_add(self.offset());
-        let (Some(line), true) = (self.lines.first(), (self.bytes.len() as u64) < needed) else {
-            return Ok(());
-        };
-        if self.storage == Storage::Null {
+        if bytes.len() as u64 >= needed {
             return Ok(());
         }
         let fault = Fault::malformed(
-            At::Byte(self.bytes.len() as u64),
+            At::Byte(bytes.len() as u64),
             format!("{needed} bytes in all, as {} states", super::file_name(header)),
             "the end of the file",
             "the file is cut short, or the header belongs to another file: copy both again",
@@ -98,9 +134,13 @@ impl<'a> Group<'a> {
     }
 
     /// The counts of every signal, in the order of the lines.
-    pub fn decode(&self, frames: u64) -> Vec<Vec<i32>> {
+    pub fn decode(self, frames: u64) -> Vec<Vec<i32>> {
+        let bytes = match self.content {
+            Content::Flac(channels) => return channels.up_to(frames, self.lines),
+            _ => self.sample_bytes(),
+        };
         let frame = self.frame as usize;
-        let interleaved = self.storage.decode(self.sample_bytes(), frames as usize * frame);
+        let interleaved = self.storage.decode(bytes, frames as usize * frame);
         let mut first = 0;
         let split = self.lines.iter().map(|line| {
             let width = line.samples_per_frame as usize;
@@ -142,16 +182,20 @@ fn missing(error: Error, header: &Path, line: &SignalLine) -> Error {
 
 /// Frames of the record: as stated, or as many as every signal file holds.
 pub(super) fn frames(header: &Header, groups: &[Group]) -> Result<u64, Fault> {
-    let held = groups.iter().filter_map(Group::frames).min().unwrap_or(0);
-    let frames = header.record.frames.unwrap_or(held);
-    if held == 0 || frames == 0 {
+    let held = groups.iter().filter_map(Group::frames).min();
+    let frames = header.record.frames.or(held).unwrap_or(0);
+    if held == Some(0) || frames == 0 {
         return Err(Fault::unsupported(
             "the record holds no samples",
             "check that its files were copied whole",
         ));
     }
-    let frame: u64 = groups.iter().map(|group| group.frame).sum();
-    at_most(MAX_SAMPLES, "samples in the record", frames.saturating_mul(frame))?;
+    let samples = |null: bool| -> u64 {
+        let groups = groups.iter().filter(|group| (group.storage == Storage::Null) == null);
+        groups.map(|group| group.frame.saturating_mul(frames)).fold(0, u64::saturating_add)
+    };
+    at_most(MAX_SAMPLES, "samples in the record", samples(false).saturating_add(samples(true)))?;
+    at_most(most_missing(samples(false)), "samples without a file", samples(true))?;
     Ok(frames)
 }
 

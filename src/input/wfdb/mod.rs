@@ -5,6 +5,7 @@
 mod checks;
 mod comments;
 mod counts;
+mod flac;
 mod groups;
 mod header;
 mod locate;
@@ -27,7 +28,7 @@ use record_line::RecordLine;
 pub(super) const FORMAT: Format = Format {
     info: FormatInfo {
         name: "wfdb",
-        description: "WFDB record: a text header (.hea) with signal files beside it (not FLAC, not multi-segment)",
+        description: "WFDB record: a text header (.hea) with signal files beside it (not multi-segment)",
     },
     score: locate::score,
     stands_alone: locate::is_header,

@@ -33,14 +33,15 @@ pub(super) fn read(
     }
     let mut signals = Vec::with_capacity(header.signals.len());
     let mut checks = Checks::default();
-    for group in &groups {
-        for (line, counts) in group.lines.iter().zip(group.decode(frames)) {
-            if group.storage != Storage::Null {
+    for group in groups {
+        let (lines, storage) = (group.lines, group.storage);
+        for (line, counts) in lines.iter().zip(group.decode(frames)) {
+            if storage != Storage::Null {
                 checks.compare(line, &counts);
             }
             let rate = rate(line, header).map_err(|fault| fault.within(path))?;
             let length = frames as usize * line.samples_per_frame as usize;
-            signals.push(signal(line, group.storage, &counts, rate, length));
+            signals.push(signal(line, storage, &counts, rate, length));
         }
     }
     checks.report(notes);

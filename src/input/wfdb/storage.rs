@@ -27,10 +27,16 @@ pub(super) enum Storage {
     Packed10InWords,
     /// 311: three samples of 10 bit, from the low end of 32 bit.
     Packed10,
+    /// 508: 8 bit, in a FLAC stream with one channel for each signal.
+    Flac8,
+    /// 516: 16 bit in a FLAC stream.
+    Flac16,
+    /// 524: 24 bit in a FLAC stream.
+    Flac24,
 }
 
 /// The formats that are read, as messages list them.
-pub(super) const READ: &str = "8, 16, 24, 32, 61, 80, 160, 212, 310 or 311";
+pub(super) const READ: &str = "8, 16, 24, 32, 61, 80, 160, 212, 310, 311, 508, 516 or 524";
 
 impl Storage {
     /// By the number in the header.
@@ -47,12 +53,9 @@ impl Storage {
             212 => Self::Packed12,
             310 => Self::Packed10InWords,
             311 => Self::Packed10,
-            508 | 516 | 524 => {
-                return Err(Fault::unsupported(
-                    format!("{at}: the FLAC-compressed storage format {format} is not read yet"),
-                    format!("store the record in format {READ}"),
-                ));
-            }
+            508 => Self::Flac8,
+            516 => Self::Flac16,
+            524 => Self::Flac24,
             _ => {
                 return Err(Fault::malformed(
                     at,
@@ -64,16 +67,21 @@ impl Storage {
         })
     }
 
+    /// Whether the samples stand in a FLAC stream, whose bytes say nothing of their count.
+    pub fn is_flac(self) -> bool {
+        matches!(self, Self::Flac8 | Self::Flac16 | Self::Flac24)
+    }
+
     /// Bits of one sample's value.
     pub fn bits(self) -> u32 {
         match self {
             Self::Null => 0,
-            Self::Offset8 => 8,
+            Self::Offset8 | Self::Flac8 => 8,
             Self::Packed10 | Self::Packed10InWords => 10,
             Self::Packed12 => 12,
             // Differences add up to a value of the usual size.
-            Self::Bits16 | Self::Bits16HighFirst | Self::Offset16 | Self::Differences8 => 16,
-            Self::Bits24 => 24,
+            Self::Bits16 | Self::Bits16HighFirst | Self::Offset16 | Self::Differences8 | Self::Flac16 => 16,
+            Self::Bits24 | Self::Flac24 => 24,
             Self::Bits32 => 32,
         }
     }
@@ -86,10 +94,11 @@ impl Storage {
         }
     }
 
-    /// Samples and bytes of one group: the smallest count that fills whole bytes.
+    /// Samples and bytes of one group: the smallest count that fills whole bytes; 0 bytes where none is
+    /// backed by a fixed number of them.
     fn group(self) -> (u64, u64) {
         match self {
-            Self::Null => (1, 0),
+            Self::Null | Self::Flac8 | Self::Flac16 | Self::Flac24 => (1, 0),
             Self::Differences8 | Self::Offset8 => (1, 1),
             Self::Bits16 | Self::Bits16HighFirst | Self::Offset16 => (1, 2),
             Self::Bits24 => (1, 3),
@@ -132,7 +141,7 @@ impl Storage {
         let mut samples: Vec<i32> =
             Vec::with_capacity(count.min(self.samples_in(bytes.len() as u64) as usize));
         match self {
-            Self::Null => {}
+            Self::Null | Self::Flac8 | Self::Flac16 | Self::Flac24 => {}
             Self::Differences8 => samples.extend(words(bytes, count, |[a]| i32::from(a as i8))),
             Self::Offset8 => samples.extend(words(bytes, count, |[a]| i32::from(a) - 128)),
             Self::Bits16 => samples.extend(words(bytes, count, |pair| i16::from_le_bytes(pair).into())),
