@@ -128,6 +128,13 @@ impl Window<'_> {
         let start = fiducial - self.before as isize;
         let count = (self.before + self.after) / self.stride;
         for signal in self.signals {
+            let inside = usize::try_from(start)
+                .ok()
+                .and_then(|start| signal.get(start..start + (count * self.stride).max(1)));
+            if let Some(inside) = inside {
+                inside.iter().step_by(self.stride).take(count).for_each(|value| see(*value));
+                continue;
+            }
             for step in 0..count {
                 let index = start + (step * self.stride) as isize;
                 see(usize::try_from(index).ok().and_then(|index| signal.get(index)).copied().unwrap_or(0.0));

@@ -142,7 +142,10 @@ fn mark(
     let qrs = seen.qrs(qrs::core(&shape)?);
     let (before, after) = intervals(beats, &members);
     let pace = Pace { rr: before, change: rr_change };
-    let t = t_wave::core(&shape, &qrs, after).map(|core| seen.t(core));
+    let t = t_wave::core(&shape, &qrs, after).map(|core| {
+        let t = seen.t(core);
+        if after < presence::ROOMY { t_wave::crowded(&shape, t) } else { t }
+    });
     let paced = members.iter().filter(|&&index| beats.all[index].paced).count() * 2 >= members.len();
     let p = (!paced)
         .then(|| p_wave::window(&shape, &qrs, t.as_ref(), before))

@@ -22,6 +22,8 @@ const P_ERROR: (f64, usize, usize) = (0.354, 0, 2);
 const PR_ERROR: (f64, usize, usize) = (0.235, 0, 3);
 const QRS_ERROR: (f64, usize, usize) = (0.37, 3, 5);
 const QT_ERROR: (f64, usize, usize) = (0.40, 3, 7);
+/// Where the median lead spreads a mark of the QRS wider than this, in ms, it has no duration.
+const WIDEST: f64 = 60.0;
 /// Largest scatter of the leads' T ends (1.4826 × median absolute deviation) for a QT, in ms.
 const T_END_SCATTER: f64 = 45.0;
 
@@ -167,6 +169,11 @@ impl Intervals {
                 Measured::NotMeasurable(Reason::LeadsDisagree),
                 Measured::NotMeasurable(Reason::LeadsDisagree),
             ),
+            // Fewer than half of the beats have the P at its place: the average only looks as if they did.
+            Some((_, presence)) if presence.shifts.iter().flatten().count() * 2 < presence.shifts.len() => (
+                Measured::NotMeasurable(Reason::PNotRelatedToQrs),
+                Measured::NotMeasurable(Reason::PNotRelatedToQrs),
+            ),
             Some((p, presence)) => {
                 let shifts: Vec<f64> = presence.shifts.iter().flatten().map(|shift| 0.8 * shift).collect();
                 let shift = median(shifts.iter().copied());
@@ -178,7 +185,7 @@ impl Intervals {
             }
             None => (Measured::NotMeasurable(no_p.clone()), Measured::NotMeasurable(no_p.clone())),
         };
-        let qrs = if told(&marked.qrs) {
+        let qrs = if marked.spreads[3] <= WIDEST && marked.spreads[5] <= WIDEST {
             interval(
                 latest(&marked.qrs.each, qrs_rank, 0.0) - earliest(&marked.qrs.each, qrs_rank, 0.0),
                 constant(QRS),

@@ -31,7 +31,7 @@ const UNLIKELY: f64 = -3.0;
 /// … from here on it is sure of one …
 const SURE: f64 = 2.0;
 /// … also where fibrillation is possible (own choices, on recordings that the network had not seen).
-const SURE_IF_IRREGULAR: f64 = 2.5;
+const SURE_IF_IRREGULAR: f64 = 3.2;
 
 /// How the beats follow each other.
 #[derive(Clone, Copy, Debug)]

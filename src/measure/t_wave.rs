@@ -1,7 +1,7 @@
 //! The stretch behind the QRS that holds a T, over all leads together: it ends where the spatial velocity
 //! behind the wave's last flank has fallen.
 
-use super::shape::{Shape, WaveMarks};
+use super::shape::{Shape, WaveMarks, median};
 use super::slopes::{above_line, slope, smooth, spatial};
 use crate::units::Seconds;
 
@@ -31,6 +31,23 @@ pub(super) fn core(shape: &Shape, qrs: &WaveMarks, rr: Seconds) -> Option<(usize
     };
     let large = smoothed.iter().filter(|signal| height(signal) >= SMALLEST).count();
     (large * 4 >= signals.len().max(4)).then_some((start, end))
+}
+
+/// Readers end T so much later than the velocity falls, in ms (median on LUDB).
+const LATER: f64 = 9.0;
+/// In a fast rhythm the two ends may differ by so much more, in ms (own choice, on built beats of known ends).
+const APART: f64 = 15.0;
+
+/// The T of a rhythm so fast that the next P or QRS stands near its end, where the network ends it late: half-way
+/// to the end that the velocity tells, and not told where the two disagree.
+pub(super) fn crowded(shape: &Shape, mut t: WaveMarks) -> WaveMarks {
+    let middle = median(t.each.iter().map(|mark| mark.offset));
+    let late = middle - t.core.1 as f64 - shape.ms(LATER);
+    for mark in &mut t.each {
+        mark.offset -= late / 2.0;
+        mark.told[2] &= late.abs() <= shape.ms(APART);
+    }
+    t
 }
 
 /// From the steepest flank behind the largest deflection to where the velocity nears its base.

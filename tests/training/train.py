@@ -2,13 +2,13 @@
 """Trains the network that marks a representative beat.
 
     cargo bench --bench windows -- DATA WINDOWS
-    python3 tests/training/train.py WINDOWS DATA OUT [--fold K/N] [--steps S]
+    python3 tests/training/train.py WINDOWS DATA OUT [--fold K/N] [--steps S] [--seed N] [--fast PART]
 
-Without --fold all records are used. Needs jax, optax, numpy and wfdb. Seeded: the same versions give the same weights.
+Without --fold all records are used; --fast is the part of the examples that is made a fast rhythm. Needs jax, optax, numpy and wfdb. Seeded: the same versions give the same weights.
 The shape of the network and its training stand in DEVELOPERS.md."""
 import argparse
 import time
-from functools import partial
+import warnings
 import jax
 import jax.numpy as jnp
 import numpy as np
@@ -125,8 +125,8 @@ def loss(p, batch, second):
 
 # ---- the examples -----------------------------------------------------------------------------------------------
 class Examples:
-    def __init__(self, records, leads, noise, rng):
-        self.rng, self.noise, self.leads = rng, noise, leads
+    def __init__(self, records, noise, rng, part_fast):
+        self.rng, self.noise, self.part_fast = rng, noise, part_fast
         self.groups = []
         for r in records:
             for c in np.unique(r['cls'][r['seen']]):
@@ -152,13 +152,10 @@ class Examples:
         x[:, :ok[0]] = x[:, ok[0]:ok[0] + 1]
         x[:, ok[-1]:] = x[:, ok[-1]:ok[-1] + 1]
         m = r['marks'][pick]
-        with np.errstate(all='ignore'):
-            import warnings
-            with warnings.catch_warnings():
-                warnings.simplefilter('ignore')
-                middle = np.nanmedian(m, 0)
-                near = np.where(np.abs(m - middle) < 60, m, np.nan)
-                marks = np.nanmean(near, 0)
+        with warnings.catch_warnings():
+            warnings.simplefilter('ignore')                   # a wave that no reader marked
+            middle = np.nanmedian(m, 0)
+            marks = np.nanmean(np.where(np.abs(m - middle) < 60, m, np.nan), 0)
         there = np.array([np.isfinite(m[:, :, 1]).any(1).mean(), np.isfinite(m[:, :, 6]).any(1).mean()])
         marks[:, 0:3] = np.where(there[0] >= 0.5, marks[:, 0:3], np.nan)
         marks[:, 6:8] = np.where(there[1] >= 0.5, marks[:, 6:8], np.nan)
@@ -174,6 +171,8 @@ class Examples:
         ms = t * 1000 / D.RATE
         x = np.stack([np.interp(np.interp(ms, moved, knots), ms, row) for row in x])
         marks = np.interp(marks, knots, moved) + 0 * marks
+        if rng.random() < self.part_fast and there[1] >= 0.5 and np.isfinite(marks[:, [3, 5, 7]]).any(0).all():
+            x, marks, there, known = self.fast(x, marks, there, known)
         if rng.random() < 0.2:
             kernel = np.exp(-(np.arange(-4, 5) / rng.uniform(0.7, 1.3)) ** 2 / 2)
             x = np.stack([np.convolve(np.pad(row, 4, 'edge'), kernel / kernel.sum(), 'valid') for row in x])
@@ -198,6 +197,38 @@ class Examples:
             weight = live
         return x.astype(np.float32), lead, live, marks.astype(np.float32), weight, there.round().astype(np.float32), known
 
+    def fast(self, x, marks, there, known):
+        """The beat in a fast rhythm: T sooner, the beats before and after laid beside it, P gone or on the T before."""
+        rng = self.rng
+        t = (np.arange(D.LENGTH) - D.FIDUCIAL) * 1000 / D.RATE
+        on, off, end = (np.nanmedian(marks[:, m]) for m in (3, 5, 7))
+        rr = rng.uniform(270, 480)
+        sooner = np.clip((rng.uniform(0.5, 0.8) * rr - off) / max(end - off, 60), 0.4, 1.05)
+        knots, moved = np.array([-1500, off, off + 1500]), np.array([-1500, off, off + 1500 * sooner])
+        marks = np.interp(marks, knots, moved) + 0 * marks
+        end = off + (end - off) * sooner
+        x = np.stack([np.interp(np.interp(t, moved, knots), t, row) for row in x])
+        y = x - x[:, np.argmin(np.abs(t - (on - 10)))][:, None]
+        y *= np.clip((end + 60 - t) / 40, 0, 1)
+        without = rng.random() < 0.6
+        if without:
+            y *= np.clip((t - (on - 30)) / 20, 0, 1)
+            marks[:, 0:3] = np.nan
+            there, known = np.array([0.0, there[1]]), np.array([1.0, known[1]], np.float32)
+        elif not end - rr < np.nanmin(marks[:, 0], initial=np.inf) - 20:    # P on the T before: no one can tell
+            marks[:, 0:3] = np.nan
+            known = np.array([0.0, known[1]], np.float32)
+        if rng.random() < 0.35:                               # a wave somewhere behind the QRS that is none of the three
+            at, width = rng.uniform(off, max(rr - 90, off + 10)), rng.uniform(55, 95)
+            bump = np.where(np.abs(t - at) < width / 2, 0.5 + 0.5 * np.cos(2 * np.pi * (t - at) / width), 0)
+            y = y + bump * rng.normal(0, 0.07, (len(y), 1))
+        at = lambda row, delay: np.interp(t - delay, t, row, left=0, right=0)
+        y = np.stack([row + at(row, rr) + at(row, -rr) for row in y])
+        first, last = np.argmax(t >= 80 - rr), np.argmax(t > rr - 50)
+        y[:, :first] = y[:, first:first + 1]
+        y[:, last:] = y[:, last - 1:last]
+        return y, marks, there, known
+
     def batch(self, size):
         parts = [self.one() for _ in range(size)]
         return tuple(jnp.asarray(np.stack(part)) for part in zip(*parts))
@@ -218,7 +249,8 @@ def muscle(folder):
 def main():
     a = argparse.ArgumentParser(description=__doc__)
     a.add_argument('windows'); a.add_argument('data'); a.add_argument('out')
-    a.add_argument('--fold'); a.add_argument('--steps', type=int, default=3500); a.add_argument('--seed', type=int, default=1)
+    a.add_argument('--fold'); a.add_argument('--steps', type=int, default=2500); a.add_argument('--fast', type=float, default=0.0)
+    a.add_argument('--seed', type=int, default=1)
     a = a.parse_args()
     rng = np.random.default_rng(a.seed)
     noise = muscle(f'{a.data}/noise')
@@ -228,7 +260,7 @@ def main():
         if a.fold:
             k, n = map(int, a.fold.split('/'))
             records = [r for i, r in enumerate(records) if i % n != k]
-        sets.append(Examples(records, 12 if name == 'ludb' else 2, noise, rng))
+        sets.append(Examples(records, noise, rng, a.fast))
     p = init(jax.random.PRNGKey(a.seed))
     rate = optax.warmup_cosine_decay_schedule(0, 3e-3, 100, a.steps, 0)
     tx = optax.chain(optax.clip_by_global_norm(1.0), optax.adamw(rate, b2=0.99, weight_decay=0.01))

@@ -95,7 +95,7 @@ mod tests {
 
     #[test]
     fn the_file_holds_whole_networks_of_finite_weights() {
-        assert!(Weights::from_bytes(BYTES).is_some_and(|all| all.len() == 2));
+        assert!(Weights::from_bytes(BYTES).is_some_and(|all| all.len() == 3));
         assert!(Weights::from_bytes(&BYTES[4..]).is_none());
         assert!(Weights::from_bytes(&[]).is_none());
         let mut tape = Tape(BYTES.chunks_exact(4));
