@@ -19,6 +19,7 @@ mod wfdb;
 pub use error::{At, Error, Fault};
 pub use export::{ExportError, Target, export};
 pub use table::{FormatInfo, formats, recordings_in};
+pub use wfdb::marks;
 
 use crate::recording::Decoded;
 use std::path::Path;

@@ -3,7 +3,7 @@
 use super::files::Candidate;
 use super::{Error, Fault, csv, edf, wfdb};
 use crate::recording::Decoded;
-use std::collections::BTreeMap;
+use std::collections::{BTreeMap, BTreeSet};
 use std::ffi::OsString;
 use std::fs;
 use std::io;
@@ -41,12 +41,13 @@ pub fn formats() -> impl Iterator<Item = FormatInfo> {
 }
 
 /// The recordings in a folder, sorted by name; one that stands there in several formats is listed once,
-/// in the first of the table.
+/// in the first of the table, and the segments of a record are not listed beside it.
 ///
 /// # Errors
 /// When the folder can't be read.
 pub fn recordings_in(folder: &Path) -> io::Result<Vec<PathBuf>> {
     let mut found: BTreeMap<OsString, (usize, PathBuf)> = BTreeMap::new();
+    let mut segments: BTreeSet<OsString> = BTreeSet::new();
     for entry in fs::read_dir(folder)? {
         let path = entry?.path();
         if !path.is_file() {
@@ -56,6 +57,7 @@ pub fn recordings_in(folder: &Path) -> io::Result<Vec<PathBuf>> {
         let Some(format) = FORMATS.iter().position(|format| (format.stands_alone)(&candidate)) else {
             continue;
         };
+        segments.extend(wfdb::segments_of(&candidate).into_iter().map(OsString::from));
         let name = path.file_stem().unwrap_or_default().to_owned();
         match found.get(&name) {
             Some((known, _)) if *known <= format => {}
@@ -64,6 +66,7 @@ pub fn recordings_in(folder: &Path) -> io::Result<Vec<PathBuf>> {
             }
         }
     }
+    found.retain(|name, (format, _)| FORMATS[*format].info != wfdb::FORMAT.info || !segments.contains(name));
     Ok(found.into_values().map(|(_, path)| path).collect())
 }
 

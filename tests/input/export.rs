@@ -5,7 +5,7 @@ use leadsheet::input::{self, Target};
 use leadsheet::recording::{Decoded, Weight};
 use std::path::{Path, PathBuf};
 
-const WFDB: [&str; 18] = [
+const WFDB: [&str; 21] = [
     "03700181",
     "100_3chan",
     "100skew",
@@ -21,7 +21,10 @@ const WFDB: [&str; 18] = [
     "test01_00s_frame",
     "test01_00s_skewframe",
     "v102s",
+    "multi-segment/041s/041s",
     "multi-segment/041s/041s02",
+    "multi-segment/fixed1/v102s",
+    "multi-segment/s25047/s25047-2704-05-04-10-44",
     "multi-segment/s25047/3234460_0018",
     "multi-segment/s25047/s25047-2704-05-04-10-44n",
 ];
@@ -109,9 +112,11 @@ fn an_exported_wfdb_record_reads_back_the_same() {
         let again = input::read(&files[0]).unwrap_or_else(|error| panic!("{error}"));
         // Where no count of the source is 0 mV, the counts of the record lie between those of the source, all
         // by the same.
-        let part = if source.source.format == "wfdb" { 1e-6 } else { 0.5 + 1e-6 };
-        assert_same(&source, &again, part);
-        for (own, other) in again.signals.iter().zip(&source.signals) {
+        // Segments of several gains have no step in common: each value comes to the nearest of the finest.
+        let several_gains = path.ends_with("s25047-2704-05-04-10-44.hea");
+        let exact = source.source.format == "wfdb" && !several_gains;
+        assert_same(&source, &again, if exact { 1e-6 } else { 0.5 + 1e-6 });
+        for (own, other) in again.signals.iter().zip(&source.signals).filter(|_| !several_gains) {
             let differences = own.samples.values_with_gaps().iter().zip(other.samples.values_with_gaps());
             let valid = differences.enumerate().filter(|(at, _)| !own.samples.gaps().contains(*at));
             let moved: Vec<f64> = valid.map(|(_, (a, b))| a - b).collect();

@@ -56,6 +56,13 @@ fn samples() -> Vec<Sample> {
             record(&["311derive_4.hea", "311derive_4.dat"]),
             record(&["3000003_0003.hea", "3000003_0003.dat"]),
             record(&["flacformats.hea", "flacformats.d0", "flacformats.d1", "flacformats.d2"]),
+            record(&[
+                "multi-segment/041s/041s.hea",
+                "multi-segment/041s/041s01.hea",
+                "multi-segment/041s/041s01.dat",
+                "multi-segment/041s/041s02.hea",
+                "multi-segment/041s/041s02.dat",
+            ]),
             record(&["test01_00s_skewframe.hea", "test01_00s.dat"]),
             record(&formats.iter().map(String::as_str).collect::<Vec<_>>()),
         ]);

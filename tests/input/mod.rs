@@ -5,5 +5,7 @@ mod edf;
 mod export;
 mod hostile;
 mod leads;
+mod marks;
 mod refused;
+mod segments;
 mod wfdb;

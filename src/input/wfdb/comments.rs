@@ -37,6 +37,23 @@ impl Stated {
         stated
     }
 
+    /// Adds what a segment's header says: its subject where there is none yet, remarks and cautions once.
+    pub fn add(&mut self, segment: Self) {
+        if self.subject == Subject::default() {
+            self.subject = segment.subject;
+        }
+        for remark in segment.occasion.remarks {
+            if !self.occasion.remarks.contains(&remark) {
+                self.occasion.remarks.push(remark);
+            }
+        }
+        for note in segment.notes {
+            if !self.notes.contains(&note) {
+                self.notes.push(note);
+            }
+        }
+    }
+
     /// Takes a comment of a known key; `false` leaves it to the remarks. What was stated first stays.
     fn take(&mut self, comment: &str) -> bool {
         let Some((key, value)) = comment.split_once(':') else { return self.take_age_and_sex(comment) };

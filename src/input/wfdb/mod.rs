@@ -2,6 +2,7 @@
 //!
 //! After the open specification, WFDB Applications Guide, header(5) and signal(5).
 
+mod annotations;
 mod checks;
 mod comments;
 mod counts;
@@ -10,25 +11,30 @@ mod groups;
 mod header;
 mod locate;
 mod record_line;
+mod segment_line;
+mod segments;
 mod signal_line;
 mod signals;
 mod storage;
+mod track;
 mod write;
 
+pub use annotations::marks;
 pub(super) use write::write;
 
+use crate::input::Error;
 use crate::input::files::{Candidate, Files, file_name, text_of};
 use crate::input::table::{Format, FormatInfo};
-use crate::input::{Error, Fault};
 use crate::recording::{Decoded, Note, Source, StartTime};
 use comments::Stated;
 use header::Header;
 use record_line::RecordLine;
+use std::path::Path;
 
 pub(super) const FORMAT: Format = Format {
     info: FormatInfo {
         name: "wfdb",
-        description: "WFDB record: a text header (.hea) with signal files beside it (not multi-segment)",
+        description: "WFDB record: a text header (.hea) with signal files beside it, of one or several segments",
     },
     score: locate::score,
     stands_alone: locate::is_header,
@@ -38,18 +44,13 @@ pub(super) const FORMAT: Format = Format {
 fn read(candidate: &Candidate) -> Result<Decoded, Error> {
     let path = locate::header_of(candidate);
     let mut files = Files::default();
-    let bytes = files.text(&path)?;
-    let header = Header::parse(&text_of(&bytes)).map_err(|fault| fault.within(&path))?;
-    if header.record.segments.is_some() {
-        let fault = Fault::unsupported(
-            "the record is made of several segments, which are not read yet",
-            "name the header of one of its segments instead",
-        );
-        return Err(fault.within(&path));
-    }
-    let stated = Stated::of(&header.comments);
+    let header = load(&path, &mut files)?;
+    let mut stated = Stated::of(&header.comments);
     let mut notes = header_notes(&header, &file_name(&path.with_extension("")));
-    let mut signals = signals::read(&path, &header, &mut files, &mut notes)?;
+    let mut signals = match header.record.segments {
+        Some(_) => segments::read(&path, &header, &mut files, &mut notes, &mut stated)?,
+        None => signals::read(&path, &header, &mut files, &mut notes)?,
+    };
     signals::apply(&stated, &mut signals);
     let Stated { subject, mut occasion, zone, notes: stated_notes, .. } = stated;
     notes.extend(stated_notes);
@@ -65,6 +66,20 @@ fn read(candidate: &Candidate) -> Result<Decoded, Error> {
     }
     let source = Source { file: file_name(&path), format: FORMAT.info.name, sha256: files.sha256() };
     Ok(Decoded { source, signals, subject, occasion, notes })
+}
+
+fn load(path: &Path, files: &mut Files) -> Result<Header, Error> {
+    let bytes = files.text(path)?;
+    Header::parse(&text_of(&bytes)).map_err(|fault| fault.within(path))
+}
+
+/// The names of the segments, when the file is the header of a record made of them.
+pub(super) fn segments_of(candidate: &Candidate) -> Vec<String> {
+    if !locate::is_header(candidate) {
+        return Vec::new();
+    }
+    let header = Header::parse(&text_of(candidate.head()));
+    header.map_or(Vec::new(), |header| header.segments.into_iter().filter_map(|line| line.name).collect())
 }
 
 fn header_notes(header: &Header, stem: &str) -> Vec<Note> {

@@ -39,7 +39,7 @@ pub(super) fn read(
             if storage != Storage::Null {
                 checks.compare(line, &counts);
             }
-            let rate = rate(line, header).map_err(|fault| fault.within(path))?;
+            let rate = rate(line, header.record.rate).map_err(|fault| fault.within(path))?;
             let length = frames as usize * line.samples_per_frame as usize;
             signals.push(signal(line, storage, &counts, rate, length));
         }
@@ -72,8 +72,9 @@ pub(super) fn apply(stated: &Stated, signals: &mut [Signal]) {
     }
 }
 
-fn rate(line: &SignalLine, header: &Header) -> Result<SampleRate, Fault> {
-    let rate = header.record.rate.get() * f64::from(line.samples_per_frame);
+/// Samples per second of a signal, at so many `frames`.
+pub(super) fn rate(line: &SignalLine, frames: SampleRate) -> Result<SampleRate, Fault> {
+    let rate = frames.get() * f64::from(line.samples_per_frame);
     SampleRate::new(rate).ok_or_else(|| {
         Fault::malformed(line.at, "a finite sampling rate", format!("{rate}/s"), "correct the record line")
     })
@@ -96,11 +97,11 @@ fn signal(line: &SignalLine, storage: Storage, counts: &[i32], rate: SampleRate,
     values.resize(length, 0.0);
     let limits = converter_limits(line, storage, counts).map(value);
     let samples = clipping::marked(Samples::new(rate, values, gaps), limits);
-    Signal { name: line.description.clone(), quantity, resolution: Some((factor / gain).abs()), samples }
+    Signal { name: line.description.clone(), quantity, resolution: Some(step(line)), samples }
 }
 
 /// What is measured, and how many units of the samples one unit of the header is.
-fn quantity(line: &SignalLine) -> (Quantity, f64) {
+pub(super) fn quantity(line: &SignalLine) -> (Quantity, f64) {
     let factor = match line.unit.as_deref() {
         None => 1.0,
         Some(unit) => match millivolts_per(unit) {
@@ -112,6 +113,11 @@ fn quantity(line: &SignalLine) -> (Quantity, f64) {
         Some(_) => (Quantity::Voltage, factor),
         None => (Quantity::UncalibratedVoltage, factor),
     }
+}
+
+/// One count in the unit of the samples.
+pub(super) fn step(line: &SignalLine) -> f64 {
+    (quantity(line).1 / line.gain.unwrap_or(DEFAULT_GAIN)).abs()
 }
 
 /// The smallest and largest count that the converter gives. Where a sample lies beyond them, the header
