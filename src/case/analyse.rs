@@ -107,6 +107,7 @@ fn analysis(recording: &Recording, sinus: Option<&Sinus>) -> Result<Analysis, An
         beats: &beats,
         representative: representative.as_ref(),
         measurements: &measurements,
+        standard_placement: recording.occasion.placement.is_none(),
     };
     let compared =
         sinus.and_then(|sinus| Some((sinus.analysis.representative.as_ref()?, &sinus.analysis.measurements)));

@@ -43,6 +43,8 @@ pub struct Subject<'a> {
     pub representative: Option<&'a RepresentativeBeat>,
     /// Intervals and marks.
     pub measurements: &'a Measurements,
+    /// Whether the source names no other electrode placement than the standard one.
+    pub standard_placement: bool,
 }
 
 /// Searches a recording, against the same patient's sinus beat and its marks where there are any.

@@ -1,8 +1,10 @@
 //! How far the measurements lie from the truth: on artificial recordings of known marks, on real ones with noise
-//! mixed in, and against outside readers. What holds is asserted.
+//! mixed in, and against outside readers. What holds is asserted; [`figures`] prints all of it and files it.
 
 mod artificial;
 mod calibration;
+mod figures;
+mod judges;
 mod noise;
 mod statistics;
 

@@ -116,6 +116,7 @@ fn suspected(recording: &Recording) -> Vec<String> {
         beats: &beats,
         representative: average.as_ref(),
         measurements: &measurements,
+        standard_placement: recording.occasion.placement.is_none(),
     };
     let notes = search(&subject, None).observations;
     let swaps = notes.iter().filter(|note| note.what.contains("suspected swapped"));
@@ -200,4 +201,13 @@ fn recordings_of_other_rhythms_and_makers_hardly_ever_bring_a_swap_note() {
     let (_, as_recorded) = counted(&all, &[Swap::None]);
     println!("{} recordings; notes as recorded: {as_recorded:?}", all.len());
     assert!(as_recorded.len() * 20 <= all.len(), "{as_recorded:?}");
+}
+
+#[test]
+fn no_swap_is_suspected_where_the_source_names_another_placement() {
+    let Some(folder) = shared("data/ludb") else { return };
+    let mut swapped = Swap::Arms.of(&recording(&folder.join("1.hea")));
+    assert_eq!(suspected(&swapped), [Swap::Arms.name()]);
+    swapped.occasion.placement = Some("right-sided chest leads".to_owned());
+    assert!(suspected(&swapped).is_empty());
 }

@@ -21,7 +21,10 @@ const WITHOUT_T: Seconds = Seconds::literal(0.400);
 
 /// What the leads suggest, chest first: where their order is in doubt, nothing is said of the limb leads from them.
 pub(super) fn suspected(subject: &Subject) -> Vec<Observation> {
-    let Some(beat) = Beat::of(subject) else { return Vec::new() };
+    // Right-sided or other leads resemble one another in other ways.
+    let Some(beat) = Some(subject).filter(|subject| subject.standard_placement).and_then(Beat::of) else {
+        return Vec::new();
+    };
     let chest = beat.chest();
     let swapped = chest.as_ref().and_then(chest::suspected);
     let limb = limb::near_flat(&beat).or_else(|| match (&swapped, &chest) {
