@@ -22,8 +22,6 @@ const P_ERROR: (f64, usize, usize) = (0.354, 0, 2);
 const PR_ERROR: (f64, usize, usize) = (0.235, 0, 3);
 const QRS_ERROR: (f64, usize, usize) = (0.37, 3, 5);
 const QT_ERROR: (f64, usize, usize) = (0.40, 3, 7);
-/// Where the median lead spreads a mark of the QRS wider than this, in ms, it has no duration.
-const WIDEST: f64 = 60.0;
 /// Largest scatter of the leads' T ends (1.4826 × median absolute deviation) for a QT, in ms.
 const T_END_SCATTER: f64 = 45.0;
 
@@ -185,7 +183,7 @@ impl Intervals {
             }
             None => (Measured::NotMeasurable(no_p.clone()), Measured::NotMeasurable(no_p.clone())),
         };
-        let qrs = if marked.spreads[3] <= WIDEST && marked.spreads[5] <= WIDEST {
+        let qrs = if told(&marked.qrs) {
             interval(
                 latest(&marked.qrs.each, qrs_rank, 0.0) - earliest(&marked.qrs.each, qrs_rank, 0.0),
                 constant(QRS),

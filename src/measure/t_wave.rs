@@ -36,7 +36,7 @@ pub(super) fn core(shape: &Shape, qrs: &WaveMarks, rr: Seconds) -> Option<(usize
 /// Readers end T so much later than the velocity falls, in ms (median on LUDB).
 const LATER: f64 = 9.0;
 /// In a fast rhythm the two ends may differ by so much more, in ms (own choice, on built beats of known ends).
-const APART: f64 = 15.0;
+const APART: f64 = 10.0;
 
 /// The T of a rhythm so fast that the next P or QRS stands near its end, where the network ends it late: half-way
 /// to the end that the velocity tells, and not told where the two disagree.
