@@ -28,6 +28,8 @@ pub(super) struct Marked {
     pub qrs: WaveMarks,
     pub p: Option<(WaveMarks, Presence)>,
     pub t: Option<(WaveMarks, Vec<f64>)>,
+    /// Whether a QT can be read from the end of T.
+    pub t_end_reliable: bool,
     /// How wide each mark may lie, in ms, as [`Seen::spreads`].
     pub spreads: [f64; 8],
 }
@@ -144,8 +146,9 @@ fn mark(
     let pace = Pace { rr: before, change: rr_change };
     let t = t_wave::core(&shape, &qrs, after).map(|core| {
         let t = seen.t(core);
-        if after < presence::ROOMY { t_wave::crowded(&shape, t) } else { t }
+        if after < presence::ROOMY { t_wave::crowded(&shape, t) } else { (t, true) }
     });
+    let (t, t_end_reliable) = t.map_or((None, false), |(t, reliable)| (Some(t), reliable));
     let paced = members.iter().filter(|&&index| beats.all[index].paced).count() * 2 >= members.len();
     let p = (!paced)
         .then(|| p_wave::window(&shape, &qrs, t.as_ref(), before))
@@ -163,7 +166,7 @@ fn mark(
         let shifts = t_shifts(&shape, thinned, &t, &fiducials);
         (t, shifts)
     });
-    Some(Marked { members, qrs, p, t, spreads: seen.spreads(), beat })
+    Some(Marked { members, qrs, p, t, t_end_reliable, spreads: seen.spreads(), beat })
 }
 
 /// Median interval before and after the members; a single beat without neighbours counts as 1 s.

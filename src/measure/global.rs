@@ -193,7 +193,7 @@ impl Intervals {
         } else {
             Measured::NotMeasurable(Reason::LeadsDisagree)
         };
-        let qt = match marked.t.as_ref().filter(|(t, _)| told(t)) {
+        let qt = match marked.t.as_ref().filter(|(t, _)| marked.t_end_reliable && told(t)) {
             Some((t, shifts)) => {
                 let ends: Vec<f64> = t.each.iter().map(|mark| mark.offset).collect();
                 let middle = median(ends.iter().copied());

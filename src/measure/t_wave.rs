@@ -39,15 +39,14 @@ const LATER: f64 = 9.0;
 const APART: f64 = 10.0;
 
 /// The T of a rhythm so fast that the next P or QRS stands near its end, where the network ends it late: half-way
-/// to the end that the velocity tells, and not told where the two disagree.
-pub(super) fn crowded(shape: &Shape, mut t: WaveMarks) -> WaveMarks {
+/// to the end that the velocity tells. And whether the two agree, or the end can't be relied on.
+pub(super) fn crowded(shape: &Shape, mut t: WaveMarks) -> (WaveMarks, bool) {
     let middle = median(t.each.iter().map(|mark| mark.offset));
     let late = middle - t.core.1 as f64 - shape.ms(LATER);
     for mark in &mut t.each {
         mark.offset -= late / 2.0;
-        mark.told[2] &= late.abs() <= shape.ms(APART);
     }
-    t
+    (t, late.abs() <= shape.ms(APART))
 }
 
 /// From the steepest flank behind the largest deflection to where the velocity nears its base.
