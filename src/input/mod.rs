@@ -9,6 +9,7 @@ mod edf;
 mod error;
 mod export;
 mod files;
+mod ishne;
 mod limits;
 mod pieces;
 mod stated;

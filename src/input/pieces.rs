@@ -49,6 +49,15 @@ impl<'a> Pieces<'a> {
         Ok(&self.piece)
     }
 
+    /// Passes over the bytes before `position`; none when it lies behind.
+    pub fn skip_to(&mut self, position: u64) -> Result<(), Error> {
+        let count = position.saturating_sub(self.position);
+        let passed = io::copy(&mut self.reader.by_ref().take(count), self.hash)
+            .map_err(|error| Fault::Io(error).within(self.path))?;
+        self.position += passed;
+        Ok(())
+    }
+
     /// Passes over the rest of the file.
     pub fn finish(mut self) -> Result<(), Error> {
         io::copy(&mut self.reader, self.hash).map_err(|error| Fault::Io(error).within(self.path))?;

@@ -1,7 +1,7 @@
 //! The table of formats.
 
 use super::files::Candidate;
-use super::{Error, Fault, csv, edf, wfdb};
+use super::{Error, Fault, csv, edf, ishne, wfdb};
 use crate::recording::Decoded;
 use std::collections::{BTreeMap, BTreeSet};
 use std::ffi::OsString;
@@ -33,7 +33,7 @@ pub struct FormatInfo {
     pub description: &'static str,
 }
 
-const FORMATS: &[Format] = &[wfdb::FORMAT, edf::FORMAT, csv::FORMAT];
+const FORMATS: &[Format] = &[wfdb::FORMAT, edf::FORMAT, ishne::FORMAT, csv::FORMAT];
 
 /// Every format that is read, in the order in which a file is offered to them.
 pub fn formats() -> impl Iterator<Item = FormatInfo> {

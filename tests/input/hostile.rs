@@ -1,6 +1,7 @@
 //! Damaged files: an error or a sound recording, never a panic.
 
 use crate::support::edf::{Edf, EdfSignal};
+use crate::support::ishne::Ishne;
 use crate::support::{TempDir, project, shared};
 use leadsheet::input::{self, Target};
 use leadsheet::recording::Recording;
@@ -34,6 +35,13 @@ fn edf(reserved: &'static str, label: &'static str, width: usize) -> Sample {
     Sample(vec![("sample.edf".to_owned(), Edf::plus(reserved, "3", signals).bytes())])
 }
 
+/// Two leads and a text.
+fn ishne() -> Sample {
+    let counts = (0..400).map(|at| at * 37 % 2000 - 1000).collect();
+    let file = Ishne { text: b"free".to_vec(), ..Ishne::two_leads(counts) };
+    Sample(vec![("sample.ecg".to_owned(), file.bytes())])
+}
+
 fn samples() -> Vec<Sample> {
     let hostile = project().join("tests/hostile");
     let mut samples = vec![
@@ -42,6 +50,7 @@ fn samples() -> Vec<Sample> {
         Sample::of(&[hostile.join("sidecar-too-few-leads.csv"), hostile.join("sidecar-too-few-leads.toml")]),
         edf("EDF+D", "EDF Annotations", 2),
         edf("BDF+C", "BDF Annotations", 3),
+        ishne(),
     ];
     if let Some(folder) = shared("formats/wfdb") {
         let record =
@@ -93,7 +102,10 @@ fn use_it(folder: &Path, first: &str) {
 }
 
 fn put(folder: &Path, name: &str, bytes: &[u8]) {
-    std::fs::write(folder.join(name), bytes).expect("a file is written");
+    let path = folder.join(name);
+    // Some file systems wait for the disk when a file is overwritten, but not when it is new.
+    let _ = std::fs::remove_file(&path);
+    std::fs::write(path, bytes).expect("a file is written");
 }
 
 #[test]
@@ -165,6 +177,21 @@ fn every_number_of_a_binary_header_at_its_limits_is_an_error_or_a_sound_recordin
             let mut damaged = bytes.clone();
             let text = format!("{number:<width$}");
             damaged[start..start + width].copy_from_slice(&text.as_bytes()[..width]);
+            put(folder.path(), name, &damaged);
+            use_it(folder.path(), name);
+        }
+    }
+}
+
+#[test]
+fn every_word_of_a_holter_header_at_its_limits_is_an_error_or_a_sound_recording() {
+    let folder = TempDir::new();
+    let Sample(files) = ishne();
+    let (name, bytes) = &files[0];
+    for at in (10..522).step_by(2) {
+        for word in [0i16, 1, -1, i16::MIN, i16::MAX] {
+            let mut damaged = bytes.clone();
+            damaged[at..at + 2].copy_from_slice(&word.to_le_bytes());
             put(folder.path(), name, &damaged);
             use_it(folder.path(), name);
         }

@@ -4,6 +4,7 @@ mod csv;
 mod edf;
 mod export;
 mod hostile;
+mod ishne;
 mod leads;
 mod marks;
 mod refused;

@@ -4,6 +4,7 @@ pub mod annotations;
 pub mod dipole;
 pub mod edf;
 pub mod golden;
+pub mod ishne;
 pub mod npz;
 pub mod program;
 pub mod sheets;
