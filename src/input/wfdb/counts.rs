@@ -79,10 +79,13 @@ impl Counts {
 }
 
 /// How far the samples lie from whole steps, -0.5 to 0.5. A source may have no count for 0, but the header holds
-/// a whole one: all samples move by the same, rather than each to its side.
+/// a whole one: all samples move by the same, rather than each to its side. Samples that lie on no common steps
+/// each go to the nearest.
 fn phase(samples: &Samples, gain: f64) -> f64 {
-    let first = samples.runs().find_map(|(_, run)| run.first()).map_or(0.0, |value| value * gain);
-    first - first.round()
+    let mut steps = samples.runs().flat_map(|(_, run)| run).map(|value| value * gain);
+    let Some(first) = steps.next() else { return 0.0 };
+    let apart = |step: f64| (step - first) - (step - first).round();
+    if steps.all(|step| apart(step).abs() < 1e-3) { first - first.round() } else { 0.0 }
 }
 
 /// The narrowest format that holds the range, and the value that is stored as 0. That is 0 itself where it
