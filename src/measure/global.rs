@@ -63,7 +63,7 @@ fn late(marks: &[Mark], rank: usize, shift: f64) -> f64 {
 
 /// Whether more than half of the signals can tell where the wave lies.
 fn told(marks: &WaveMarks) -> bool {
-    marks.each.iter().filter(|mark| mark.told.iter().all(|told| *told)).count() * 2 > marks.each.len()
+    marks.each.iter().filter(|mark| mark.is_told()).count() * 2 > marks.each.len()
 }
 
 /// The global mark of a wave, moved by `shift` samples.

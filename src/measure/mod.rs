@@ -118,16 +118,15 @@ fn lead_mark(
         peak: fiducial + shape.time(mark.peak + shift),
         offset: fiducial + shape.time(mark.offset + shift),
     };
-    // A wave whose peak or end can't be told in this lead has no marks in it.
-    let told = |mark: &shape::Mark| mark.told[1] && mark.told[2];
+    // A P or T that can't be told in this lead has no marks in it.
     let p = global::p_shift(marked, place).zip(marked.p.as_ref()).and_then(|(shift, (p, _))| {
         let mark = &p.each[signal];
-        (told(mark) && mark.told[0]).then(|| wave(mark, shift))
+        mark.is_told().then(|| wave(mark, shift))
     });
     let t = marked.t.as_ref().and_then(|(t, shifts)| {
         let mark = &t.each[signal];
         let shift = place.and_then(|place| shifts.get(place).copied()).unwrap_or(0.0);
-        told(mark).then(|| wave(mark, shift))
+        mark.is_told().then(|| wave(mark, shift))
     });
     let found = amplitudes(marked, lead)?;
     Some(LeadMarks {

@@ -2,8 +2,8 @@
 //!
 //! The stretch before the QRS is searched in all leads together; in each lead the onset is the corner
 //! of the wave, the point farthest from the chord between baseline and peak (triangle method, Rosin
-//! 2001; scale-free, no threshold), the offset where 80 % of the wave's slope is spent. The leads then
-//! agree as for the QRS. Constants in ms are the readers' habit.
+//! 2001; scale-free, no threshold), the offset where 80 % of the wave's slope is spent. Each lead is
+//! then drawn towards the median, so that one lead's noise can't carry its mark away. Constants in ms are the readers' habit.
 
 use super::shape::{Mark, Shape, WaveMarks, median};
 use super::slopes::{above_line, corner, slope, smooth, spatial};

@@ -14,7 +14,7 @@ const MANY: usize = 8;
 /// Log-odds from which the network sees a P (own choice, on records that it had not seen).
 const P_SEEN: f64 = -1.0;
 /// A mark is told in a lead when its distribution is no wider than this, in ms (standard deviation; chosen
-/// so that at most one mark in a hundred is left out).
+/// so that about one mark in a hundred is left out).
 const TOLD: [f64; 8] = [46.0, f64::INFINITY, 46.0, 32.0, f64::INFINITY, 50.0, 52.0, 62.0];
 
 /// A beat as the network sees it, in samples of its window.

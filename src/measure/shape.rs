@@ -15,6 +15,11 @@ pub(super) struct Mark {
 }
 
 impl Mark {
+    /// Whether the whole wave can be told in this signal.
+    pub fn is_told(&self) -> bool {
+        self.told.iter().all(|told| *told)
+    }
+
     /// The mark moved towards another by a part of the way; what the other can't tell isn't told.
     pub fn towards(&self, other: &Mark, part: f64) -> Mark {
         let between = |own: f64, other: f64| own + part * (other - own);

@@ -153,7 +153,7 @@ fn tachycardias(said: &BTreeMap<&str, String>) -> String {
     let found = numbers(&line("with a tachycardia"), &[]);
     let false_ones = numbers(&line("premature beats only"), &[]);
     text + &format!(
-        "\nBuilt recordings in which a tachycardia starts and ends: {:.0} of {:.0} found, start and end within a beat {:.0} and {:.0}, \
+        "\nBuilt recordings (of LUDB beats too) in which a tachycardia starts and ends: {:.0} of {:.0} found, start and end within a beat {:.0} and {:.0}, \
          last wave {:.0}, premature P within 30 ms {:.0}, PR jump within 25 ms {:.0}; {:.0} false in {:.0} with premature beats only.\n",
         found[1], found[0], found[2], found[3], found[4], found[6], found[8], false_ones[1], false_ones[0]
     )

@@ -171,7 +171,7 @@ class Examples:
         ms = t * 1000 / D.RATE
         x = np.stack([np.interp(np.interp(ms, moved, knots), ms, row) for row in x])
         marks = np.interp(marks, knots, moved) + 0 * marks
-        if rng.random() < self.part_fast and there[1] >= 0.5 and np.isfinite(marks[:, [3, 5, 7]]).any(0).all():
+        if self.part_fast and rng.random() < self.part_fast and there[1] >= 0.5 and np.isfinite(marks[:, [3, 5, 7]]).any(0).all():
             x, marks, there, known = self.fast(x, marks, there, known)
         if rng.random() < 0.2:
             kernel = np.exp(-(np.arange(-4, 5) / rng.uniform(0.7, 1.3)) ** 2 / 2)

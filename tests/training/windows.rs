@@ -39,29 +39,9 @@ fn annotated(path: &Path, set: &str) -> (f64, f64) {
     if set == "ludb" {
         return (0.0, f64::INFINITY);
     }
-    let bytes = fs::read(path.with_extension("q1c")).expect("annotations");
-    let (mut at, mut first, mut place) = (0i64, None, 0);
-    while place + 1 < bytes.len() {
-        let word = u16::from_le_bytes([bytes[place], bytes[place + 1]]);
-        let (kind, step) = (word >> 10, i64::from(word & 0x3ff));
-        place += 2;
-        match kind {
-            0 if step == 0 => break,
-            59 => {
-                let high = i64::from(u16::from_le_bytes([bytes[place], bytes[place + 1]]));
-                let low = i64::from(u16::from_le_bytes([bytes[place + 2], bytes[place + 3]]));
-                at += (high << 16) | low;
-                place += 4;
-            }
-            60..=62 => {}
-            63 => place += (step as usize).div_ceil(2) * 2,
-            _ => {
-                at += step;
-                first.get_or_insert(at);
-            }
-        }
-    }
-    (first.unwrap_or(0) as f64 / 250.0, at as f64 / 250.0)
+    let marks = leadsheet::input::marks(&path.with_extension("q1c")).expect("annotations").marks;
+    let at = |mark: Option<&leadsheet::recording::Mark>| mark.map_or(0.0, |mark| mark.tick as f64 / 250.0);
+    (at(marks.first()), at(marks.last()))
 }
 
 fn write(path: &Path, (first, last): (f64, f64), index: &mut fs::File, values: &mut Vec<f32>) {

@@ -1,5 +1,5 @@
-//! The layers: arithmetic in one fixed order and without fused steps, so that every machine gets the
-//! same bits.
+//! The layers: sums in one fixed order and without fused steps, so that the width of a machine's vectors
+//! changes nothing.
 
 use std::array::from_fn;
 
